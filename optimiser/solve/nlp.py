@@ -48,7 +48,8 @@ class Nlp:
                 self.constraints.append(constraint)
             if rows:
                 yield writer.tape, rows
-        (objective,) = model.component_data_objects(Objective, active=True)
+        (self.objective,) = model.component_data_objects(Objective, active=True)
+        objective = self.objective
         self.sense = 1.0 if objective.sense == minimize else -1.0
         writer = TapeWriter()
         writer.body(objective.expr if self.sense > 0 else -objective.expr)
@@ -76,7 +77,7 @@ class Nlp:
         factors = self.model.component("scaling_factor")
         self.factor = np.array([factors.get(v, 1.0) if factors else 1.0 for v in self.variables])
         row_factor = [factors.get(c, 1.0) if factors else 1.0 for c in self.constraints]
-        self.row_factor = np.array([*row_factor, 1.0])
+        self.row_factor = np.array([*row_factor, factors.get(self.objective, 1.0) if factors else 1.0])
         self.read_bounds()
         ends = [c.to_bounded_expression() for c in self.constraints]
         low = np.array([-INFINITY if a is None else value(a) for a, _, _ in ends])
