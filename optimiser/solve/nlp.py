@@ -31,6 +31,7 @@ class Nlp:
         self.variables: list[Any] = []
         self.constraints: list[Any] = []
         self._index: dict[int, int] = {}
+        self._first_at: tuple[Floats, Floats] | None = None
         self.sense = 1.0
         pieces = list(self._pieces(model))
         self._collect(pieces)
@@ -112,6 +113,7 @@ class Nlp:
     def refresh(self) -> None:
         """Take bounds, mutable parameters and fixed variables from the model again."""
         self.read_bounds()
+        self._first_at = None
         for shape in self.shapes:
             shape.refresh()
 
@@ -129,9 +131,12 @@ class Nlp:
         return float(g[-1]), g[:-1]
 
     def _first(self, x: Floats) -> Floats:
-        model_x = x / self.factor
-        nonzeros = np.concatenate([shape.jacobian(model_x) for shape in self.shapes])
-        return nonzeros * self._jacobian_scale
+        """All first derivatives; the last point's are kept, since solvers ask for gradient and Jacobian in turn."""
+        if self._first_at is None or not np.array_equal(self._first_at[0], x):
+            model_x = x / self.factor
+            nonzeros = np.concatenate([shape.jacobian(model_x) for shape in self.shapes])
+            self._first_at = (x.copy(), nonzeros * self._jacobian_scale)
+        return self._first_at[1]
 
     def jacobian(self, x: Floats) -> Floats:
         """Nonzeros at (`jacobian_rows`, `jacobian_columns`)."""
