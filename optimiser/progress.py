@@ -1,4 +1,4 @@
-"""What a long calculation tells whoever waits for it: passed in as an object, silent unless someone listens."""
+"""What a long calculation tells whoever waits for it: an object passed in, silent unless someone listens."""
 
 from __future__ import annotations
 
