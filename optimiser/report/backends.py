@@ -57,7 +57,7 @@ def _verdict(rows: Sequence[BackendRow]) -> str:
     if not broken:
         return "Everything is there: cases can be solved."
     if not can_solve(rows):
-        return "No solver works, so no case can be solved: pip install --force-reinstall setpoise"
+        return "No solver works, so no case can be solved. Install setpoise anew in a fresh environment."
     if "cyipopt" in broken or "casadi" in broken:
         return f"Cases can be solved; without {broken[0]} the other solver takes its place."
     return "Cases can be solved; where limits clash, setpoise cannot say which."

@@ -1,0 +1,1 @@
+"""Room 8: runs on disk, so that nothing finished is ever lost."""
