@@ -1,4 +1,4 @@
-"""One case from file to defended answer: build, start, solve, audit, and say what it means."""
+"""The solves of one case: what they share, their starts, and the best of them."""
 
 from __future__ import annotations
 

@@ -5,11 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Any
 
-from optimiser.chemistry.maths import sqrt
 from optimiser.engineering.refrigeration import refrigeration_work
+from optimiser.engineering.vessels import separator_diameter
 from optimiser.section.exchange import Exchanger, build_exchanger
 from optimiser.section.frame import Frame, Gas, gas_at, temperature_at
 from optimiser.section.removal import Flash, build_flash
+
+# What stands on the cold side of each cooler, as equipment.
+_USES = {"water_cooler": "water_cooled", "cold_exchanger": "exchanger", "chiller": "chiller"}
 
 
 @dataclass
@@ -129,8 +132,10 @@ def _duty(frame: Frame, train: Train, name: str, hot: Any, cold: Flash, separato
         evaporating = cold.temperature - plant.evaporator_approach.si
         ends = (hot.temperature - evaporating, plant.evaporator_approach.si)
         _refrigeration(frame, block, train, duty, evaporating)
-    coefficient = plant.coefficient.si
-    train.exchangers.append(build_exchanger(frame, block, path, duty, ends, hot.pressure, coefficient, minimum))
+    coefficient, use = plant.coefficient.si, _USES[name]
+    train.exchangers.append(
+        build_exchanger(frame, block, path, duty, ends, hot.pressure, coefficient, minimum, use)
+    )
 
 
 def _refrigeration(frame: Frame, block: Any, train: Train, duty: Any, evaporating: Any) -> None:
@@ -165,8 +170,6 @@ def _separator(frame: Frame, separator: Flash) -> None:
     frame.report("condensation.separator.vapour_fraction", "fraction", fraction)
     density = frame.define(block, "vapour_density", "difference", gas.density, low=1e-3)
     heavy = frame.define(block, "liquid_density", "difference", liquid.density, low=1.0, start=500.0)
-    velocity = plant.vapour_velocity_constant.si * sqrt((heavy - density) / density)
-    diameter = frame.define(
-        block, "diameter", "length", sqrt(4.0 * gas.volume / (3.141592653589793 * velocity)), low=0.01
-    )
+    size = separator_diameter(gas.volume, density, heavy, plant.vapour_velocity_constant.si)
+    diameter = frame.define(block, "diameter", "length", size, low=0.01)
     frame.report("condensation.separator.diameter", "length", diameter)

@@ -12,9 +12,13 @@ from optimiser.section.frame import Edge, Frame
 
 @dataclass(frozen=True)
 class Exchanger:
-    """What costs need to know of one exchanger: duty W, area m2, design pressure basis Pa."""
+    """What costs need to know of one exchanger: duty W, area m2, pressure of the loop gas Pa.
+
+    `use` names the correlation by what stands on the cold side.
+    """
 
     path: str
+    use: str
     duty: Any
     area: Any
     pressure: Any
@@ -34,6 +38,7 @@ def build_exchanger(
     pressure: Any,
     coefficient: float,
     minimum: Quantity | None,
+    use: str,
 ) -> Exchanger:
     """Counter-current exchanger from its duty and its two end differences.
 
@@ -59,4 +64,4 @@ def build_exchanger(
         for end in ends:
             edge = Edge(f"{path}.minimum_approach", end, "low", minimum.si, minimum.unit, f"{path}.approach")
             frame.edge(edge)
-    return Exchanger(path, duty, area, pressure)
+    return Exchanger(path, use, duty, area, pressure)

@@ -14,7 +14,7 @@ from pyomo.core import Block, ConcreteModel, Constraint, Suffix, Var
 
 from optimiser.chemistry.mixture import Mixture, Phase
 from optimiser.chemistry.reactions import Chemistry
-from optimiser.engineering.costs import Equipment
+from optimiser.engineering.costs import Correlation, Equipment
 from optimiser.inputs.case import Case
 from optimiser.quantities import Setting
 
@@ -73,6 +73,16 @@ class Edge:
     reported: str
 
 
+@dataclass(frozen=True)
+class Bought:
+    """A piece of equipment with the correlation that costs it; size SI, pressure Pa or None."""
+
+    name: str
+    correlation: Correlation
+    size: Any
+    pressure: Any
+
+
 @dataclass
 class Frame:
     """The model under construction and what has been registered in it.
@@ -92,6 +102,7 @@ class Frame:
     definitions: list[tuple[Any, Any]] = field(default_factory=list)
     holds: dict[str, Any] = field(default_factory=dict)
     flashes: dict[str, Any] = field(default_factory=dict)
+    bought: list[Bought] = field(default_factory=list)
 
     def __post_init__(self) -> None:
         self.model.scaling_factor = Suffix(direction=Suffix.EXPORT)

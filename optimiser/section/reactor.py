@@ -182,5 +182,6 @@ def _exchanger(frame: Frame, reactor: Reactor, record: _Cooled, differences: tup
         record.pressure,
         step.coefficient.si,
         step.minimum_approach,
+        "exchanger" if step.sink == "feed" else "water_cooled",
     )
     reactor.exchangers.append(exchanger)
