@@ -1,4 +1,4 @@
-"""Run folders: written beside their place and moved there whole, so that half of one never passes for a run."""
+"""Run folders: written beside their place and moved there whole, so that nobody meets half of one."""
 
 from __future__ import annotations
 
