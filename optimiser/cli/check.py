@@ -49,7 +49,7 @@ def _check(name: str, log: RunLog, *, as_json: bool, sets: Sequence[str]) -> int
 
     with recording(log), spare_stdout():
         case = read_case(name, sets)
-        from optimiser.findings.run import check_case
+        from optimiser.findings.checking import check_case
 
         found = check_case(case)
     page = check_page(cast(CheckResult, found), title=case.title, look=look_of(sys.stdout))

@@ -55,6 +55,8 @@ class Saving:
         except OSError as problem:
             where = shown(folder.staging)
             return f"The run could not be saved ({reason(problem)}); what there is lies in {where}"
+        finally:
+            self._log.close()
 
     def rescue(self) -> Path:
         """Keep the log of a run that an unexpected error ended and return its path."""

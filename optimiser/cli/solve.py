@@ -104,7 +104,7 @@ def _work(request: Request, log: RunLog, saving: Saving) -> tuple[str, dict[str,
     if request.save:
         saving.begin(case, request.out)
     log.stage("loading the solver")
-    from optimiser.findings.run import solve_case
+    from optimiser.findings.answer import solve_case
 
     result = solve_case(
         case, starts=request.starts, seed=request.seed, thorough=request.thorough, progress=log

@@ -15,6 +15,8 @@ if TYPE_CHECKING:
 
 # Starts whose objectives differ by less than this part of it reached the same optimum.
 SAME = 1e-4
+# Status of a start that the solver finished to its tolerance.
+CONVERGED = "converged"
 DIRECTIONS = {"maximise": "highest within the limits", "minimise": "lowest within the limits"}
 
 
@@ -109,7 +111,7 @@ def _starts(result: Result) -> list[RenderableType]:
 
 
 def _agreement(starts: list[Start], best: float, unit: str) -> str:
-    values = [s["objective"] for s in starts if s["objective"] is not None and s["status"] == "optimal"]
+    values = [s["objective"] for s in starts if s["objective"] is not None and s["status"] == CONVERGED]
     same = [v for v in values if abs(v - best) <= SAME * abs(best)]
     parts = [f"{len(same)} of {len(starts)} starts reached this optimum"]
     others = [v for v in values if v not in same]

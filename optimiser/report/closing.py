@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
-from optimiser.report.layout import Audit, AuditLine, Result, WorstLine
+from optimiser.report.layout import Audit, AuditLine, Hashed, Result, WorstLine
 from optimiser.report.look import ALERT, BAD, GOOD, HEADING, QUIET, Look, bulleted, heading
 from optimiser.report.numbers import number, unit_name
 from optimiser.report.plain import plain
@@ -70,6 +70,9 @@ def _origin(result: Result) -> list[RenderableType]:
     made = result.get("provenance")
     if not made:
         return []
-    case = f"{plain(made['case']['file'])} (sha256 {plain(made['case']['sha256'])[:12]})"
     version = f"setpoise {plain(made['setpoise'])}, {plain(made['backend'])}, seed {made['seed']}"
-    return [Text(f"{version}; {case}", style=QUIET)]
+    return [Text("; ".join([version, *_hashed(made["case"])]), style=QUIET)]
+
+
+def _hashed(made: Hashed) -> list[str]:
+    return [f"{plain(made['file'])} (sha256 {made['sha256'][:12]})"] if made["sha256"] else []

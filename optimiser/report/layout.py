@@ -128,7 +128,7 @@ class Audit(TypedDict):
 
 
 class Start(TypedDict):
-    """How one start ended."""
+    """How one start ended; `status` is `converged` where the solver met its tolerance."""
 
     objective: float | None
     status: str
@@ -140,7 +140,7 @@ class Hashed(TypedDict):
     """A file that went in, by name and hash."""
 
     file: str
-    sha256: str
+    sha256: str | None
 
 
 class Provenance(TypedDict):
