@@ -8,9 +8,7 @@ from __future__ import annotations
 
 from typing import Any
 
-from optimiser.chemistry.maths import power
-
-GAS_CONSTANT = 8.31446261815324
+from optimiser.chemistry.maths import R, power
 
 
 def staged_work(
@@ -27,13 +25,13 @@ def staged_work(
     Args:
         inlet_temperature: T1, K.
         ratio: r, last discharge over first inlet pressure, -.
-        heat_capacity_ratio: k, cp/cv, above 1, -.
+        heat_capacity_ratio: k, cp/cv, a number above 1, -.
         efficiency: eta, isentropic, -.
         stages: n, at least 1.
     """
     exponent = (heat_capacity_ratio - 1.0) / heat_capacity_ratio
     rise = power(ratio, exponent / stages) - 1.0
-    return stages * GAS_CONSTANT * inlet_temperature * rise / (exponent * efficiency)
+    return stages * R * inlet_temperature * rise / (exponent * efficiency)
 
 
 def stage_discharge_temperature(

@@ -20,7 +20,6 @@ from math import ceil
 from typing import Any
 
 from optimiser.chemistry.maths import exp, log, power
-
 from optimiser.engineering.smooth import proportional_max, proportional_min, smooth_max
 
 LN10 = 2.302585092994046
@@ -107,7 +106,7 @@ class PressureFactor:
     high: float
 
     def at(self, pressure_barg: Any) -> Any:
-        """F_P, never below 1: above the curve by at most 0.001, and that only where the curve is near 1.
+        """F_P, never below 1: above the curve by at most 0.0015, most at the lower end of the range.
 
         Worked value: C = (0.03881, -0.11272, 0.08183) at 100 barg: 1.38258.
         """

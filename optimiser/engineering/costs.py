@@ -15,7 +15,6 @@ from dataclasses import dataclass
 from typing import Any
 
 from optimiser.chemistry.maths import power
-
 from optimiser.engineering.correlations import (
     Correlation,
     bare_module,
@@ -66,7 +65,7 @@ def quoted(cost: Any, size: Any, quoted_size: Any, exponent: Any) -> Any:
         cost: C, of the quote.
         size: S, unit of `quoted_size`.
         quoted_size: S0, above 0.
-        exponent: n, usually 0.5 to 0.8.
+        exponent: n, a number, usually 0.5 to 0.8.
     """
     return cost * power(size / quoted_size, exponent)
 
@@ -78,7 +77,7 @@ def capital_recovery(interest: Any, life: Any) -> Any:
 
     Args:
         interest: i, a year, -.
-        life: n, years.
+        life: n, a number, years.
     """
     growth = power(1.0 + interest, life)
     return interest * growth / (growth - 1.0)

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 from difflib import get_close_matches
 from functools import cache
 from pathlib import Path
-from typing import Any
+from typing import Any, TypeGuard
 
 from optimiser.engineering.correlations import (
     SIZE_UNITS,
@@ -185,7 +185,7 @@ class _Reader:
         return low, high
 
 
-def _is_number(value: Any) -> bool:
+def _is_number(value: Any) -> TypeGuard[float]:
     return isinstance(value, (int, float)) and not isinstance(value, bool) and abs(value) < 1e300
 
 
@@ -247,4 +247,6 @@ def _correlation(name: str, read: _Reader) -> Correlation:
 
 def _pressure(read: _Reader) -> PressureFactor:
     read.keys(("coefficients", "range"))
-    return PressureFactor(*read.numbers("coefficients", 3), *read.span("range"))
+    c1, c2, c3 = read.numbers("coefficients", 3)
+    low, high = read.span("range")
+    return PressureFactor(c1, c2, c3, low, high)
