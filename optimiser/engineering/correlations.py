@@ -8,8 +8,8 @@ everywhere.
 Sources:
     [1] Turton, R., et al., Analysis, Synthesis and Design of Chemical Processes, appendix A (form of the
         curves).
-    [2] Towler, G., Sinnott, R., Chemical Engineering Design, chapter on cost estimating (power form; from
-        memory).
+    [2] Towler, G., Sinnott, R., Chemical Engineering Design, chapter on cost estimating (power
+        form).
 """
 
 from __future__ import annotations

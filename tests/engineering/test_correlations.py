@@ -65,7 +65,7 @@ def test_bare_module_of_the_book(figures: dict[str, Any]) -> None:
 
 
 def test_cost_by_shell_mass() -> None:
-    # Towler and Sinnott, from memory.
+    # Towler and Sinnott, Chemical Engineering Design, costs of January 2010.
     vessel = CORRELATIONS["vessel_shell_mass"]
     assert vessel.curve == PowerLaw(11600.0, 34.0, 0.85)
     assert vessel.curve.purchased(1e5) == pytest.approx(616215.0, abs=0.1)
