@@ -46,8 +46,9 @@ class Saving:
         if folder is None:
             return ""
         try:
-            folder.write("report.txt", result_page(cast(Result, result), title=title))
+            # The result first: should its page fail, the numbers are on disk.
             folder.write("result.json", as_json(result))
+            folder.write("report.txt", result_page(cast(Result, result), title=title))
             made = result.get("provenance") or {}
             folder.write("provenance.json", provenance_text(made, folder, command=command, sets=sets))
             self._log.close()

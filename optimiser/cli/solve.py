@@ -88,8 +88,8 @@ def _solve(request: Request, log: RunLog, saving: Saving, listener: PlainWaiting
             title, result = _work(request, log, saving)
     finally:
         listener.end()
-    say(_answer(request, result, title))
     kept = saving.finish(result, title, command=sys.argv, sets=request.sets)
+    say(_answer(request, result, title))
     if kept and not request.quiet:
         say(f"{kept}\n", sys.stderr)
     return solve_code(result)

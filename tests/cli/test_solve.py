@@ -193,6 +193,13 @@ def test_an_unexpected_error_without_a_folder_keeps_its_log_too(rooms, capsys, m
     assert "ZeroDivisionError" in Path(told["log"]).read_text(encoding="utf-8")
 
 
+def test_a_page_that_fails_does_not_cost_the_result(rooms, capsys):
+    rooms.result["decisions"] = {"loop.pressure": {}}
+    assert main(["solve", "coast"]) == 1
+    assert "an unexpected error ended the run (KeyError: 'at')" in capsys.readouterr().err
+    assert json.loads((only_run() / "result.json").read_text(encoding="utf-8")) == rooms.result
+
+
 def test_an_interruption_that_left_no_point_is_said(rooms, capsys):
     def interrupt():
         raise KeyboardInterrupt
