@@ -48,7 +48,7 @@ def solve_case(
     """
     progress = progress or Progress()
     clock = time.perf_counter()
-    clash = _empty_ranges(case)
+    clash = empty_ranges(case)
     if clash:
         return _without_point(case, "conflict", clash, seed, starts)
     progress.stage("building the section")
@@ -131,7 +131,7 @@ def _without_point(case: Case, status: str, stopped: str, seed: int, starts: int
     }
 
 
-def _empty_ranges(case: Case) -> str:
+def empty_ranges(case: Case) -> str:
     """A limit that leaves nothing of a decision's range: well formed, but impossible."""
     settings = case.settings()
     for path, limit in case.limits.items():

@@ -20,6 +20,9 @@ from optimiser.section.makeup import MakeUp
 from optimiser.section.reactor import Reactor
 
 CARBON_DIOXIDE = 0.0440095
+"""Molar mass, kg/mol."""
+YEAR = 365.25 * 86400.0
+"""One calendar year, s."""
 
 
 @dataclass
@@ -78,7 +81,7 @@ def _operating(frame: Frame, inventory: Inventory) -> dict[str, Any]:
     price = prices.catalyst.si if prices.catalyst is not None else catalyst.price
     life = economics.catalyst_life.si if economics.catalyst_life is not None else catalyst.life
     volume = sum(bed.volume for bed in inventory.reactor.beds)
-    year_of_life = 365.25 * 86400.0 / life
+    year_of_life = YEAR / life
     items = {
         "feed": _feed(frame, inventory) * year,
         "electricity": power * prices.electricity.si * year,
@@ -121,7 +124,7 @@ def _credits(frame: Frame, inventory: Inventory) -> dict[str, Any]:
 
 def _fixed(frame: Frame, capital: Any) -> dict[str, Any]:
     economics = frame.case.economics
-    recovery = capital_recovery(economics.interest.si, economics.life.years)
+    recovery = capital_recovery(economics.interest.si, economics.life.si / YEAR)
     return {
         "capital_recovery": capital * recovery,
         "maintenance": capital * economics.maintenance.si,

@@ -1,0 +1,75 @@
+"""What a careful colleague would add to a result: ranges left, factors that know no catalyst, credits that pay too well."""
+
+from __future__ import annotations
+
+from optimiser.engineering.costs import gauge_bar, out_of_range
+from optimiser.engineering.vessels import wall_out_of_range
+from optimiser.findings.result import number
+from optimiser.findings.run import Workshop
+from optimiser.inputs.case import BedStep
+
+
+def gather_warnings(workshop: Workshop, values: dict[str, float]) -> list[str]:
+    """All warnings of a point; `values` are its reported quantities, SI."""
+    return [
+        *_cost(values),
+        *_correlations(workshop),
+        *_walls(workshop, values),
+        *_chemistry(workshop, values),
+        *_factors(workshop),
+    ]
+
+
+def _cost(values: dict[str, float]) -> list[str]:
+    if values["costs.total"] > 0:
+        return []
+    return [
+        "the credits exceed the costs, so product per unit cost has no meaning here; set objective: annual profit"
+    ]
+
+
+def _correlations(workshop: Workshop) -> list[str]:
+    """Cost correlations used outside the range that they were fitted to."""
+    factor = workshop.case.vessels.design_pressure_factor.si
+    found = []
+    for item in workshop.section.frame.bought:
+        gauge = None if item.pressure is None else gauge_bar(factor * number(item.pressure))
+        fault = out_of_range(item.correlation, number(item.size), gauge)
+        if fault is not None:
+            found.append(f"cost of {item.name.replace('_', ' ')}: {fault}")
+    return found
+
+
+def _walls(workshop: Workshop, values: dict[str, float]) -> list[str]:
+    case = workshop.case.vessels
+    design = case.design_pressure_factor.si * values["loop.pressure"]
+    fault = wall_out_of_range(design, case.allowable_stress.si, case.joint_efficiency.si)
+    return [] if fault is None else [f"vessel walls: {fault}"]
+
+
+def _chemistry(workshop: Workshop, values: dict[str, float]) -> list[str]:
+    """Rate laws and polynomials outside the range that their source states."""
+    found: list[str] = []
+    for bed in workshop.section.reactor.beds:
+        temperatures = [number(p.temperature) for p in bed.points]
+        pressure = number(bed.inlet.pressure)
+        coldest = min(number(bed.inlet.temperature), *temperatures)
+        for fault in workshop.chemistry.range_faults((coldest, max(temperatures)), (pressure, pressure)):
+            found.append(f"{bed.name}: {fault}")
+    return found
+
+
+def _factors(workshop: Workshop) -> list[str]:
+    """Beds told by a constant approach: nothing tells the optimiser that their catalyst goes to sleep."""
+    found = []
+    free = [path for path, s in workshop.case.settings().items() if not s.held]
+    for step in workshop.case.reactor:
+        if not isinstance(step, BedStep) or step.rate != "approach":
+            continue
+        resting = [p for p in free if p == "loop.pressure" or p.startswith(f"reactor.{step.name}.")]
+        if resting:
+            found.append(
+                f"{step.name} keeps a constant approach to equilibrium whatever its temperature, pressure and volume; "
+                f"these decisions rest on it: {', '.join(resting)}. Use rate: kinetic or rate: damkohler to defend them"
+            )
+    return found
