@@ -11,8 +11,6 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
-import numpy as np
-
 from optimiser.chemistry.maths import R, log, sqrt
 
 
@@ -144,20 +142,31 @@ class CubicMix:
         return R * log(root - self.big_b) + self.slope_a / self.b * self._attraction(root)
 
     def roots(self) -> list[float]:
-        """Real roots above B, ascending; numbers only."""
+        """Real roots above B, ascending; numbers only, by Cardano's formulas and two Newton steps."""
         c2, c1, c0 = (float(c) for c in self.coefficients())
-        found = np.roots([1.0, c2, c1, c0])
-        real = sorted(float(z.real) for z in found if abs(z.imag) < 1e-9 and z.real > float(self.big_b))
-        return [self._polished(z, c2, c1, c0) for z in real]
+        found = [_polished(z, c2, c1, c0) for z in _cubic_roots(c2, c1, c0)]
+        return sorted(z for z in found if z > float(self.big_b))
 
-    @staticmethod
-    def _polished(z: float, c2: float, c1: float, c0: float) -> float:
-        for _ in range(3):
-            slope = (3.0 * z + 2.0 * c2) * z + c1
-            if slope == 0.0:
-                break
-            z -= (((z + c2) * z + c1) * z + c0) / slope
-        return z
+
+def _cubic_roots(c2: float, c1: float, c0: float) -> list[float]:
+    """Real roots of z^3 + c2 z^2 + c1 z + c0."""
+    third = c2 / 3.0
+    q = third * third - c1 / 3.0
+    r = third**3 - third * c1 / 2.0 + c0 / 2.0
+    if r * r < q**3:
+        angle, size = math.acos(max(-1.0, min(1.0, r / math.sqrt(q**3)))), -2.0 * math.sqrt(q)
+        return [size * math.cos((angle + 2.0 * math.pi * k) / 3.0) - third for k in (0, 1, -1)]
+    big = -math.copysign(math.cbrt(abs(r) + math.sqrt(r * r - q**3)), r)
+    return [big + (q / big if big else 0.0) - third]
+
+
+def _polished(z: float, c2: float, c1: float, c0: float) -> float:
+    for _ in range(2):
+        slope = (3.0 * z + 2.0 * c2) * z + c1
+        if slope == 0.0:
+            break
+        z -= (((z + c2) * z + c1) * z + c0) / slope
+    return z
 
 
 class IdealMix:

@@ -30,7 +30,7 @@ def log_quotients(chemistry: Chemistry, phase: Phase) -> Floats:
 
 
 def equilibrium_extents(
-    chemistry: Chemistry, flows: Sequence[float], temperature: float, pressure: float
+    chemistry: Chemistry, flows: Sequence[float], temperature: float, pressure: float, shift: float = 0.0
 ) -> Floats:
     """Extents of the reactions at equilibrium, mol/s, shape (reactions,).
 
@@ -38,12 +38,13 @@ def equilibrium_extents(
         flows: of the gas that reacts, mol/s; a species may be absent.
         temperature: K.
         pressure: Pa.
+        shift: kelvin added to the temperature for the equilibrium constants alone, for a stated approach.
 
     Raises:
         NoEquilibrium: after 200 iterations.
     """
     nu = np.array([r.nu for r in chemistry.reactions])
-    ln_k = np.array([float(r.ln_k(temperature)) for r in chemistry.reactions])
+    ln_k = np.array([float(r.ln_k(temperature + shift)) for r in chemistry.reactions])
     start = np.array(flows, dtype=float)
     floor = TRACE * float(start.sum())
     extents = _interior(nu, start, floor)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
@@ -16,7 +16,7 @@ from optimiser.chemistry.species import Species
 from optimiser.chemistry.thermo import enthalpy_sum, gibbs_sum
 
 if TYPE_CHECKING:
-    from optimiser.inputs.model import LawData, Model
+    from optimiser.inputs.model import CatalystData, LawData, Model, SpeciesData
 
 
 @dataclass(frozen=True)
@@ -45,7 +45,7 @@ class Catalyst:
         void: share of the bed between pellets.
         pellet_diameter: m.
         gas_viscosity: Pa s at `viscosity_temperature`; grows with T^`viscosity_exponent`.
-        price: money per kg, in `currency`; life: s.
+        price: money per kg in the model's currency (EUR); life: s.
         temperature_range, pressure_range: where the rate law was measured, K and Pa.
     """
 
@@ -56,7 +56,6 @@ class Catalyst:
     viscosity_temperature: float
     viscosity_exponent: float
     price: float
-    currency: str
     life: float
     temperature_range: tuple[float, float]
     pressure_range: tuple[float, float]
@@ -95,19 +94,23 @@ class Chemistry:
             species: those present; None for all. A species that never occurs must be left out, since equilibrium
                 between phases takes the logarithm of every fraction.
         """
-        kept = tuple(s for s in model.species if species is None or s.name in species)
-        names = [s.name for s in kept]
-        mixture = build_mixture(model, kind, kept)
+        names = [n for n in model.species if species is None or n in species]
+        kept = tuple(_species(n, model.species[n]) for n in names)
         reactions = tuple(
-            Reaction(r.name, tuple(r.species.get(n, 0.0) for n in names), kept) for r in model.reactions
+            Reaction(name, tuple(numbers.get(n, 0.0) for n in names), kept)
+            for name, numbers in model.reactions.items()
         )
-        laws = tuple(
-            _law(model.law_of(r.name), r.nu, names) for r in reactions if model.law_of(r.name) is not None
-        )
-        touched = {n for r in model.reactions for n in r.species}
-        inerts = tuple(n for n in names if n not in touched)
+        laws = tuple(_law(model.rate_laws[r.name], r.nu, names) for r in reactions if r.name in model.rate_laws)
+        touched = {n for numbers in model.reactions.values() for n in numbers}
         return cls(
-            mixture, reactions, laws, model.catalyst, model.products, model.key_reactant, inerts, model.effectiveness
+            build_mixture(model, kind, kept),
+            reactions,
+            laws,
+            _catalyst(model.catalyst),
+            model.products,
+            model.key_reactant,
+            tuple(n for n in names if n not in touched),
+            model.effectiveness,
         )
 
     def rates(self, phase: Phase, temperature: Any, pressure: Any, activity: Any) -> list[Any]:
@@ -149,10 +152,41 @@ def _outside(
     return [f"{what} at {where} {name}, outside its range of {low:.0f} .. {high:.0f} {name}"]
 
 
+def _species(name: str, data: SpeciesData) -> Species:
+    shift = data.enthalpy_shift.si if data.enthalpy_shift is not None else 0.0
+    ranges = tuple((part.range.low, part.range.high, part.coefficients) for part in data.nasa)
+    critical = data.critical
+    return Species(
+        name,
+        data.elements,
+        data.molar_mass.si,
+        ranges,
+        critical.temperature.si,
+        critical.pressure.si,
+        critical.acentric,
+        shift,
+    )
+
+
+def _catalyst(data: CatalystData) -> Catalyst:
+    return Catalyst(
+        bulk_density=data.bulk_density.si,
+        void=data.void.si,
+        pellet_diameter=data.pellet_diameter.si,
+        gas_viscosity=data.viscosity.value.si,
+        viscosity_temperature=data.viscosity.temperature.si,
+        viscosity_exponent=data.viscosity.exponent,
+        price=data.price.si,
+        life=data.life.si,
+        temperature_range=(data.range.temperature.low, data.range.temperature.high),
+        pressure_range=(data.range.pressure.low, data.range.pressure.high),
+    )
+
+
 def build_mixture(model: Model, kind: str, kept: Sequence[Species]) -> Mixture:
     """Species with the equation of state of that kind; for "ideal" the liquid is by SRK."""
     cubic = "srk" if kind == "ideal" else kind
-    pairs: Mapping[frozenset[str], tuple[float, float]] = model.binary[cubic]
+    pairs = {frozenset(pair.pair): (pair.k, 0.0) for pair in getattr(model.binary, cubic)}
     binary = [[pairs.get(frozenset((a.name, b.name)), (0.0, 0.0)) for b in kept] for a in kept]
     liquid = Cubic(
         cubic,
@@ -164,18 +198,18 @@ def build_mixture(model: Model, kind: str, kept: Sequence[Species]) -> Mixture:
     return Mixture(kept, None if kind == "ideal" else liquid, liquid)
 
 
-def _law(data: LawData | None, nu: Sequence[float], names: Sequence[str]) -> RateLaw:
+def _law(data: LawData, nu: Sequence[float], names: Sequence[str]) -> RateLaw:
     """A law in species order."""
-    assert data is not None
     where = {name: k for k, name in enumerate(names)}
+    guard = data.guard
     return RateLaw(
-        Arrhenius(data.log_factor, data.activation),
+        Arrhenius(data.log_factor, data.activation_temperature),
         {where[n]: a for n, a in data.powers.items()},
         data.driving_power,
         data.equilibrium_power,
         nu,
-        data.pressure_unit,
-        data.rate_unit,
-        data.guard,
-        frozenset(where[n] for n in data.guarded),
+        data.pascals,
+        data.rate_size,
+        guard.value if guard is not None else 0.0,
+        frozenset(where[n] for n in guard.species) if guard is not None else frozenset(),
     )

