@@ -3,8 +3,8 @@
 Exception
 `-- InputError            everything wrong with one case or model, told together
 
-`InputProblem` is one entry of it. A problem is told with its place, what was read and what is wanted, so that the
-user can mend it without looking anything up.
+`InputProblem` is one entry of it. A problem is told with its place, what was read and what is wanted, so that
+the user can mend it without looking anything up.
 """
 
 from __future__ import annotations

@@ -12,12 +12,12 @@ from typing import Annotated, Any, Literal
 
 from pydantic import BeforeValidator, Field, ValidationInfo
 
-from optimiser.inputs.errors import InputError, InputProblem
+from optimiser.inputs.errors import InputError, InputProblem, nearest
 from optimiser.inputs.fields import Kind, Section, fault
-from optimiser.inputs.lookup import find
+from optimiser.inputs.lookup import find_model
 from optimiser.inputs.validation import validated
 from optimiser.inputs.yaml_reader import Document, read_document
-from optimiser.quantities import Money, Quantity, Setting, nearest_name
+from optimiser.quantities import Money, Quantity, Setting
 
 Confidence = Literal["confirmed", "quoted", "fitted", "from memory", "invented"]
 GAS_CONSTANT = 8.31446261815324
@@ -80,7 +80,7 @@ class SpeciesData(Section):
     molar_mass: Annotated[Quantity, Kind(("molar_mass",), least=0.0, above=True)]
     nasa: Annotated[tuple[NasaRange, ...], Field(min_length=1)]
     critical: Critical
-    enthalpy_shift: _sourced("amount_energy") | None = None  # type: ignore[valid-type]
+    enthalpy_shift: _sourced("molar_energy") | None = None  # type: ignore[valid-type]
     source: str | list[str]
     confidence: Confidence
 
@@ -130,7 +130,7 @@ class CatalystData(Section):
     pellet_diameter: _sourced("length")  # type: ignore[valid-type]
     viscosity: Viscosity
     price: _sourced("mass_price")  # type: ignore[valid-type]
-    life: _sourced("time")  # type: ignore[valid-type]
+    life: _sourced("years")  # type: ignore[valid-type]
     range: Ranges
 
 
@@ -138,7 +138,7 @@ class Constant(Section):
     """A exp(-E/(R T))."""
 
     factor: Annotated[float, Field(gt=0)]
-    activation: Annotated[Quantity, Kind(("amount_energy",))]
+    activation: Annotated[Quantity, Kind(("molar_energy",))]
     gas_constant: Annotated[Quantity, Kind(("ratio",))] | None = None
     source: str
     confidence: Confidence
@@ -213,8 +213,8 @@ def read_model(name: str, relative_to: Path | None = None) -> Model:
     Raises:
         InputError: all that is wrong with it.
     """
-    path = find(name, "models", relative_to)
-    document = read_document(path)
+    path = find_model(name, relative_to)
+    document = read_document(path, path.name)
     context = {"money": Money()}
     model, problems = validated(Model, document, context)
     if model is not None:
@@ -238,11 +238,11 @@ def _meaning(model: Model, document: Document) -> list[InputProblem]:
         named += [(("rate_laws", law, "powers", s), s) for s in data.powers]
         if law not in model.reactions:
             wanted = f"one of {', '.join(model.reactions)}"
-            problems.append(document.problem(("rate_laws", law), wanted, read=law, key=True))
+            problems.append(document.problem(("rate_laws", law), law, wanted, key=True))
     for path, species in named:
         if species not in model.species:
             wanted = f"one of {', '.join(known)}"
-            problems.append(document.problem(path, wanted, read=species, nearest=nearest_name(species, known)))
+            problems.append(document.problem(path, species, wanted, nearest(species, known)))
     return problems or _balances(model, document)
 
 
@@ -254,5 +254,5 @@ def _balances(model: Model, document: Document) -> list[InputProblem]:
             excess = sum(nu * model.species[s].elements.get(element, 0.0) for s, nu in numbers.items())
             if abs(excess) > 1e-9:
                 read = f"{element} does not balance: {excess:+g} atoms are made"
-                problems.append(document.problem(("reactions", name), "numbers that balance", read=read))
+                problems.append(document.problem(("reactions", name), read, "numbers that balance"))
     return problems

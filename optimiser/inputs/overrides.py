@@ -1,147 +1,180 @@
 """`--set PATH=VALUE`: one value of a case replaced before it is checked.
 
-PATH goes by names: `reactor.bed1.volume`, `compression.low.discharge_pressure`, `limits.reactor.bed1.hottest`. A last part
-`.low` or `.high` moves one end of a range or of a limit.
+PATH goes by names: `reactor.bed1.volume`, `compression.low.discharge_pressure`, `limits.loop.inerts`.
+A last part `.low` or `.high` moves one end of a range or of a limit and leaves the other.
 """
 
 from __future__ import annotations
 
 import re
+from collections.abc import Sequence
 from typing import Any
 
-from optimiser.inputs.errors import InputError, InputProblem
-from optimiser.inputs.yaml_reader import Document
-from optimiser.quantities import nearest_name
+from optimiser.inputs.errors import InputError, InputProblem, nearest
+from optimiser.inputs.yaml_reader import NAMING_KEYS, Document, Path_, Spot, plain_value
 
-_SET = "--set"
-_NAME_KEYS = ("bed", "cool", "stage")
-# Lists whose items are reached by their name, and mappings that paths leave out.
+# Mappings whose paths leave out the list inside them.
 _SHORTCUTS = {"compression": "stages"}
+_SIGNS = {"low": ">=", "high": "<="}
 
 
-def apply_sets(document: Document, sets: list[str]) -> None:
-    """Change the document's data; problems with a value that was set are told of the option.
+def apply_sets(document: Document, sets: Sequence[str]) -> None:
+    """Change the document's data, one option after the other.
 
     Raises:
-        InputError: an option that is not PATH=VALUE, or a path that leads nowhere.
+        InputError: options that are not PATH=VALUE, or whose path leads nowhere.
     """
     problems: list[InputProblem] = []
-    for text in sets:
-        path, equals, value = text.partition("=")
-        if not equals or not path.strip() or not value.strip():
-            problems.append(_problem(path, f"{text!r} is not PATH=VALUE", "such as loop.pressure=150 bar"))
+    for option in sets:
+        path, equals, value = (part.strip() for part in option.partition("="))
+        if not (equals and path and value):
+            wanted = "PATH=VALUE, such as `loop.pressure=150 bar`"
+            problems.append(InputProblem("--set", None, None, path, option, wanted))
             continue
-        found = _assign(document.data, path.strip(), _typed(value.strip()))
-        if isinstance(found, InputProblem):
-            problems.append(found)
-        else:
-            document.sources[found] = f"{_SET} {text}"
+        try:
+            _apply(document, path, _unquoted(value))
+        except _Nowhere as problem:
+            source = f"--set {path}"
+            problems.append(
+                InputProblem(source, None, None, path, problem.read, problem.wanted, problem.near)
+            )
     if problems:
         raise InputError(problems)
 
 
-def _problem(path: str, read: str, wanted: str, near: str | None = None) -> InputProblem:
-    return InputProblem(_SET, None, None, path, read, wanted, near)
+class _Nowhere(Exception):
+    """A path that leads to no value."""
+
+    def __init__(self, read: str, wanted: str, near: str | None = None) -> None:
+        super().__init__(read)
+        self.read, self.wanted, self.near = read, wanted, near
 
 
-def _typed(value: str) -> Any:
-    """A value as YAML would have read it; quotes around it are taken off."""
-    if len(value) > 1 and value[0] == value[-1] and value[0] in "'\"":
-        return value[1:-1]
-    if value in ("true", "false"):
-        return value == "true"
-    if value in ("null", "~"):
-        return None
-    if re.fullmatch(r"[-+]?\d{1,17}", value):
-        return int(value)
-    if re.fullmatch(r"[-+]?(\d+\.?\d*|\.\d+)([eE][-+]?\d+)?", value):
-        return float(value)
-    return value
+def _unquoted(value: str) -> str:
+    quoted = len(value) > 1 and value[0] == value[-1] and value[0] in "'\""
+    return value[1:-1] if quoted else value
 
 
-def _assign(data: Any, path: str, value: Any) -> tuple[str | int, ...] | InputProblem:
-    """Replace one value; the path taken as keys and positions."""
-    side = path.rsplit(".", 1)[-1] if path.endswith((".low", ".high")) else None
-    plain = path.removesuffix(f".{side}") if side else path
+def _apply(document: Document, path: str, value: str) -> None:
+    """Replace the value at a path of names."""
+    plain, dot, side = path.rpartition(".")
+    ends = dot == "." and side in _SIGNS
     if path.startswith("limits."):
-        return _assign_limit(data, plain.removeprefix("limits."), side, value)
-    taken, holder = _walk(data, plain.split("."))
-    if isinstance(taken, InputProblem):
-        return taken
-    key = taken[-1]
-    if side is not None:
-        end = _moved_end(str(holder.get(key, "")), side, str(value))
-        if end is None:
-            return _problem(path, f"{plain} is not a range", f"{plain}= with a range such as 1 .. 2 and its unit")
-        value = end
-    holder[key] = value
-    return taken
+        _set_limit(document, plain if ends else path, side if ends else "", value, path)
+        return
+    if ends and _is_value(document, plain):
+        place, new = _walk(document, plain)
+        before = document.text(place)
+        if not before:
+            raise _Nowhere(path, f"`{plain}=` with both ends, such as `1 .. 2` and their unit")
+        _put(document, place, new, _moved(before, side, value), path)
+        return
+    place, new = _walk(document, path)
+    _put(document, place, new, value, path)
 
 
-def _walk(data: Any, parts: list[str]) -> tuple[tuple[str | int, ...] | InputProblem, Any]:
-    """Keys and positions that the parts of a path stand for, and the mapping that holds the last."""
-    taken: list[str | int] = []
-    holder = data
+def _put(document: Document, place: Path_, new: Path_, text: str, path: str) -> None:
+    """Write a text at a place; `new` is the first part of the place that had to be made."""
+    holder = document.data
+    for part in place[:-1]:
+        holder = holder[part]
+    holder[place[-1]] = plain_value(text)
+    document.values[place] = Spot(1, 1, text)
+    document.sources[new] = f"--set {path}"
+
+
+def _is_value(document: Document, path: str) -> bool:
+    """Whether a path leads to a single value, or to nothing yet."""
+    try:
+        place, _ = _walk(document, path)
+    except _Nowhere:
+        return False
+    holder = document.data
+    for part in place[:-1]:
+        holder = holder[part]
+    return not isinstance(holder.get(place[-1]), dict | list)
+
+
+def _walk(document: Document, path: str) -> tuple[Path_, Path_]:
+    """The place that a path of names means, and the part of it that is new (all of it where nothing is)."""
+    parts, new = path.split("."), 0
+    place: list[str | int] = []
+    holder = document.data
+    if not all(parts):
+        raise _Nowhere(path, "names with single dots between them")
     for depth, part in enumerate(parts):
-        last = depth == len(parts) - 1
-        if isinstance(holder, dict) and part not in holder and taken[-1:] and taken[-1] in _SHORTCUTS:
-            inner = holder.get(_SHORTCUTS[str(taken[-1])])
-            if isinstance(inner, list) and _position(inner, part) is not None:
-                taken.append(_SHORTCUTS[str(taken[-1])])
+        if isinstance(holder, dict) and part not in holder and place[-1:] and place[-1] in _SHORTCUTS:
+            inner = holder.get(_SHORTCUTS[str(place[-1])])
+            if isinstance(inner, list) and (_position(inner, part) is not None or depth + 1 < len(parts)):
+                place.append(_SHORTCUTS[str(place[-1])])
                 holder = inner
-        if isinstance(holder, list):
-            position = _position(holder, part)
-            if position is None:
-                return _nowhere(parts, part, _names(holder)), None
-            taken.append(position)
-            holder = holder[position]
-            continue
-        if not isinstance(holder, dict) or (part not in holder and not last):
-            known = list(holder) if isinstance(holder, dict) else []
-            return _nowhere(parts, part, known), None
-        taken.append(part)
-        if last:
-            return tuple(taken), holder
-        holder = holder[part] if holder[part] is not None else {}
-    return _problem(".".join(parts), "this is a whole section", "the path of a value in it"), None
+        step = _step(holder, part, path)
+        place.append(step)
+        if depth + 1 == len(parts):
+            break
+        if isinstance(holder, dict) and holder.get(part) is None:
+            holder[part] = {}
+            new = new or len(place)
+        holder = holder[step]
+    if not isinstance(holder, dict):
+        raise _Nowhere(path, "the path of a single value, not of a whole step")
+    return tuple(place), tuple(place[: new or len(place)])
+
+
+def _step(holder: Any, part: str, path: str) -> str | int:
+    """The key or the position that a part of a path means."""
+    if isinstance(holder, dict):
+        return part
+    if not isinstance(holder, list):
+        raise _Nowhere(part, "the path of a value in the case")
+    position = _position(holder, part)
+    if position is None:
+        names = [
+            str(item[key]) for item in holder if isinstance(item, dict) for key in NAMING_KEYS if key in item
+        ]
+        raise _Nowhere(part, f"one of {', '.join(names)}", nearest(part, names))
+    return position
 
 
 def _position(items: list[Any], name: str) -> int | None:
     for k, item in enumerate(items):
-        if isinstance(item, dict) and any(item.get(key) == name for key in _NAME_KEYS):
+        if isinstance(item, dict) and any(item.get(key) == name for key in NAMING_KEYS):
             return k
     return None
 
 
-def _names(items: list[Any]) -> list[str]:
-    return [str(item[key]) for item in items if isinstance(item, dict) for key in _NAME_KEYS if key in item]
+def _set_limit(document: Document, path: str, side: str, value: str, asked: str) -> None:
+    """A limit; its key is all of the path after its first name."""
+    place: Path_ = ("limits", path.removeprefix("limits."))
+    new = place if isinstance(document.data.get("limits"), dict) else place[:1]
+    if new != place:
+        document.data["limits"] = {}
+    before = document.text(place)
+    one_sided = re.match(r"<=|>=|≤|≥", before)
+    bare = re.sub(r"^(?:<=|>=|≤|≥)\s*", "", value)
+    if side:
+        text = _moved_limit(before, side, bare)
+    elif one_sided and ".." not in value and bare == value:
+        text = f"{one_sided[0]} {value}"
+    else:
+        text = value
+    _put(document, place, new, text, asked)
 
 
-def _nowhere(parts: list[str], part: str, known: list[str]) -> InputProblem:
-    wanted = f"one of {', '.join(known)}" if known else "the path of a value in the case"
-    return _problem(".".join(parts), f"there is no {part}", wanted, nearest_name(part, known))
+def _moved_limit(before: str, side: str, value: str) -> str:
+    """A limit with one end moved; the other end stays."""
+    if ".." in before:
+        return _moved(before, side, value)
+    sign = before[:2]
+    if not before or sign == _SIGNS[side]:
+        return f"{_SIGNS[side]} {value}"
+    other = before[2:].strip()
+    return f"{other} .. {value}" if side == "high" else f"{value} .. {other}"
 
 
-def _assign_limit(data: Any, key: str, side: str | None, value: Any) -> tuple[str | int, ...]:
-    limits = data.setdefault("limits", {})
-    if not isinstance(limits, dict):
-        limits = data["limits"] = {}
-    text, before = str(value), str(limits.get(key, ""))
-    if side is not None:
-        bare = re.sub(r"^\s*(<=|>=)\s*", "", text)
-        moved = _moved_end(before, side, bare)
-        text = moved if moved is not None else f"{'<=' if side == 'high' else '>='} {bare}"
-    elif re.match(r"\s*[-+.\d]", text) and ".." not in text and before[:2] in ("<=", ">="):
-        text = f"{before[:2]} {text}"
-    limits[key] = text
-    return ("limits", key)
-
-
-def _moved_end(text: str, side: str, value: str) -> str | None:
-    """A range with one end replaced; None where there is no range."""
-    low, dots, high = text.partition("..")
+def _moved(before: str, side: str, value: str) -> str:
+    """A range with one end moved; a held value is a range whose ends are equal."""
+    low, dots, high = (part.strip() for part in before.partition(".."))
     if not dots:
-        return None
-    unit = re.sub(r"^\s*[-+.\deE]+\s*", "", high).strip()
-    low = low.strip() if re.search(r"[^-+.\deE\s]", low) else f"{low.strip()} {unit}"
-    return f"{value} .. {high.strip()}" if side == "low" else f"{low} .. {value}"
+        high = low
+    return f"{low} .. {value}" if side == "high" else f"{value} .. {high}"

@@ -1,15 +1,24 @@
-"""Result paths: every quantity that a result of a case reports and that may carry a limit, with its dimension."""
+"""Result paths: every quantity that a result reports and that may carry a limit, with its dimension."""
 
 from __future__ import annotations
 
-from optimiser.inputs.case import BedStep, Case
+from collections.abc import Iterable, Mapping
+from typing import TYPE_CHECKING, Any
 
-_EXCHANGER = {"duty": "power", "area": "area", "approach": "temperature_difference", "outlet_temperature": "temperature"}
+if TYPE_CHECKING:
+    from optimiser.inputs.case import Case
+
+_EXCHANGER = {
+    "duty": "power",
+    "area": "area",
+    "approach": "temperature_difference",
+    "outlet_temperature": "temperature",
+}
 _BED = {
     "inlet_temperature": "temperature",
     "outlet_temperature": "temperature",
     "hottest": "temperature",
-    "pressure_drop": "pressure",
+    "pressure_drop": "pressure_difference",
     "length": "length",
     "diameter": "length",
     "volume": "volume",
@@ -19,25 +28,22 @@ _BED = {
 }
 _STAGE = {
     "discharge_temperature": "temperature",
-    "discharge_pressure": "pressure",
     "power": "power",
     "ratio": "ratio",
     "intercooler_duty": "power",
     "intercooler_area": "area",
 }
-_FIXED = {
+_ALWAYS = {
     "feed.flow": "molar_flow",
-    "feed.product_rate": "mass_flow",
     "compression.power": "power",
     "loop.pressure": "pressure",
     "loop.recycle_ratio": "ratio",
     "loop.purge_fraction": "fraction",
-    "loop.inerts": "fraction",
-    "loop.pressure_drop": "pressure",
+    "loop.pressure_drop": "pressure_difference",
     "loop.circulator_power": "power",
     "reactor.catalyst_volume": "volume",
     "reactor.conversion": "fraction",
-    "reactor.pressure_drop": "pressure",
+    "reactor.pressure_drop": "pressure_difference",
     "condensation.separator.pressure": "pressure",
     "condensation.separator.volume": "volume",
     "condensation.separator.diameter": "length",
@@ -50,51 +56,103 @@ _FIXED = {
     "purge.flow": "molar_flow",
     "purge.heating_value": "power",
 }
-_COSTS = ("feed", "electricity", "cooling_water", "catalyst", "capital_recovery", "maintenance", "fixed", "total")
+_COSTS = (
+    "feed",
+    "electricity",
+    "cooling_water",
+    "catalyst",
+    "capital_recovery",
+    "maintenance",
+    "fixed",
+    "fuel_credit",
+    "total",
+)
 _CAPITAL = ("compressors", "circulator", "exchangers", "converter", "separator", "total")
 
 
-def result_paths(case: Case) -> dict[str, str]:
-    """Path to dimension of everything that a limit of this case may name."""
-    paths = dict(_FIXED)
-    for name, stream in case.feed.streams.items():
+def result_paths(case: Case, reacting: Iterable[str] | None = None) -> dict[str, str]:
+    """Path to dimension of everything that a limit of this case may name.
+
+    Args:
+        reacting: species that take part in a reaction; None if not known, then inerts are expected.
+    """
+    return paths_of(case.resolved(), reacting)
+
+
+def paths_of(data: Mapping[str, Any], reacting: Iterable[str] | None = None) -> dict[str, str]:
+    """As `result_paths`, from the data of a file that may still be wrong."""
+    paths = dict(_ALWAYS)
+    if _has_inerts(data, reacting):
+        paths["loop.inerts"] = "fraction"
+    for name, stream in mapping(data, "feed", "streams").items():
         paths[f"feed.streams.{name}.flow"] = "molar_flow"
-        if stream.share is not None:
+        if isinstance(stream, dict) and "share" in stream:
             paths[f"feed.streams.{name}.share"] = "fraction"
-    for k, stage in enumerate(case.compression.stages):
-        last = k == len(case.compression.stages) - 1
-        paths |= _under(f"compression.{stage.name}", _STAGE, ("discharge_pressure",) if last else ())
-    for step in case.reactor:
-        if isinstance(step, BedStep):
-            paths |= _under(f"reactor.{step.name}", _BED)
-            if step.length_over_diameter is not None:
-                paths[f"reactor.{step.name}.length_over_diameter"] = "ratio"
-        else:
-            paths |= _under(f"reactor.{step.name}", _EXCHANGER)
-    return paths | _train(case) | _money(case)
+    for stage in items(data, "compression", "stages"):
+        paths |= _under(f"compression.{stage.get('stage')}", _STAGE)
+        if "discharge_pressure" in stage:
+            paths[f"compression.{stage.get('stage')}.discharge_pressure"] = "pressure"
+    for step in items(data, "reactor"):
+        paths |= _step(step)
+    return paths | _train(data) | _money(data)
 
 
-def _under(prefix: str, names: dict[str, str], without: tuple[str, ...] = ()) -> dict[str, str]:
-    return {f"{prefix}.{name}": dimension for name, dimension in names.items() if name not in without}
+def mapping(data: Any, *path: str) -> dict[str, Any]:
+    """The mapping at a path, empty where there is none."""
+    for part in path:
+        data = data.get(part) if isinstance(data, dict) else None
+    return data if isinstance(data, dict) else {}
 
 
-def _train(case: Case) -> dict[str, str]:
+def items(data: Any, *path: str) -> list[dict[str, Any]]:
+    """The items at a path that are mappings, empty where there is no list."""
+    for part in path:
+        data = data.get(part) if isinstance(data, dict) else None
+    return [item for item in data if isinstance(item, dict)] if isinstance(data, list) else []
+
+
+def _under(prefix: str, names: Mapping[str, str]) -> dict[str, str]:
+    return {f"{prefix}.{name}": dimension for name, dimension in names.items()}
+
+
+def _has_inerts(data: Mapping[str, Any], reacting: Iterable[str] | None) -> bool:
+    """Whether a species is fed that takes part in no reaction."""
+    if reacting is None:
+        return True
+    streams = mapping(data, "feed", "streams").values()
+    fed = {species for stream in streams for species, y in mapping(stream, "composition").items() if y != 0}
+    return bool(fed - set(reacting))
+
+
+def _step(step: dict[str, Any]) -> dict[str, str]:
+    if "cool" in step:
+        return _under(f"reactor.{step['cool']}", _EXCHANGER)
+    if "bed" not in step:
+        return {}
+    paths = _under(f"reactor.{step['bed']}", _BED)
+    if "length_over_diameter" in step:
+        paths[f"reactor.{step['bed']}.length_over_diameter"] = "ratio"
+    return paths
+
+
+def _train(data: Mapping[str, Any]) -> dict[str, str]:
     paths: dict[str, str] = {}
+    train = mapping(data, "condensation")
     for part in ("water_cooler", "cold_exchanger", "chiller"):
-        if getattr(case.condensation, part) is not None:
+        if part in train:
             paths |= _under(f"condensation.{part}", _EXCHANGER)
-    if case.condensation.cold_exchanger is not None:
+    if "cold_exchanger" in train:
         paths["condensation.cold_exchanger.recycle_temperature"] = "temperature"
-    if case.condensation.chiller is not None:
+    if "chiller" in train:
         paths["condensation.chiller.power"] = "power"
     return paths
 
 
-def _money(case: Case) -> dict[str, str]:
-    costs, capital = [*_COSTS, "fuel_credit"], [*_CAPITAL]
-    sinks = {getattr(step, "sink", None) for step in case.reactor}
+def _money(data: Mapping[str, Any]) -> dict[str, str]:
+    costs, capital = [*_COSTS], [*_CAPITAL]
+    sinks = {step.get("sink") for step in items(data, "reactor")}
     costs += ["steam_credit"] if "steam" in sinks else []
     costs += ["water_heat_credit"] if "boiler_feed_water" in sinks else []
-    costs += ["carbon"] if case.prices.carbon is not None else []
-    capital += ["refrigeration"] if case.condensation.chiller is not None else []
+    costs += ["carbon"] if "carbon" in mapping(data, "prices") else []
+    capital += ["refrigeration"] if "chiller" in mapping(data, "condensation") else []
     return {f"costs.{c}": "money_per_year" for c in costs} | {f"capital.{c}": "money" for c in capital}

@@ -1,8 +1,8 @@
 """YAML files as plain data that remember where every value stands.
 
-Read as a stream of events: no object is ever made from a tag, nothing is executed, and what could grow beyond the
-file (anchors, aliases) is refused. Of YAML 1.2 all else is understood. A value may begin with `>=`, which YAML itself
-would take for the sign of a folded text.
+Read as a stream of events: no object is ever made from a tag, nothing is executed, and what could grow beyond
+the file (anchors, aliases) is refused. Of YAML 1.2 all else is understood. A value may begin with `>=`, which
+YAML itself would take for the sign of a folded text.
 """
 
 from __future__ import annotations
@@ -36,7 +36,7 @@ _FLOAT = re.compile(r"[-+]?(?:\.[0-9]+|[0-9]+(?:\.[0-9]*)?)(?:[eE][-+]?[0-9]+)?"
 
 @dataclass(frozen=True)
 class Spot:
-    """Line and column counted from 1, and the text that stands there (empty for lists and mappings)."""
+    """Line and column counted from 1, and the text of a value (empty for lists, mappings and keys)."""
 
     line: int
     column: int
@@ -96,13 +96,15 @@ class Document:
         return InputProblem(self.file, line, column, self.dotted(path), found, wanted, nearest)
 
     def dotted(self, path: Path_) -> str:
-        """The path as users write it: items of a list go by their name where they have one."""
+        """The path as users write it: items go by their names, stages without the name of their list."""
         parts, holder = [], self.data
         for part in path:
             inside = isinstance(holder, list) and isinstance(part, int) and 0 <= part < len(holder)
             known = isinstance(holder, dict) and part in holder
             holder = holder[part] if inside or known else None
             name = _name_of(holder) if inside else None
+            if name is not None and parts[-1] == "stages":
+                parts.pop()
             parts.append(str(part) if name is None else name)
         return ".".join(parts)
 
@@ -235,7 +237,10 @@ class _Reader:
             return None
         self._plainness(event, path)
         text = event.value.replace(_GREATER, ">") if isinstance(event, ScalarEvent) else ""
-        self.document.values[path] = Spot(event.start_mark.line + 1, event.start_mark.column + 1, text)
+        spot = Spot(event.start_mark.line + 1, event.start_mark.column + 1, text)
+        # YAML finds a missing value only where the next one begins; its key is the better place.
+        missing = text == "" and isinstance(event, ScalarEvent) and event.style is None
+        self.document.values[path] = self.document.keys.get(path, spot) if missing else spot
         if len(path) > DEEPEST:
             self._fault(event, path[:DEEPEST], "", f"at most {DEEPEST} levels within one another")
             self._skip(event)
@@ -244,7 +249,7 @@ class _Reader:
             return self._mapping(path)
         if isinstance(event, SequenceStartEvent):
             return self._sequence(path)
-        return self._scalar(event, text, path)
+        return text if event.style is not None else plain_value(text)
 
     def _plainness(self, event: Any, path: Path_) -> None:
         if event.anchor is not None:
@@ -278,7 +283,7 @@ class _Reader:
             self._fault(event, inner, name, f"each key once; it stands in line {first} too")
             self._skip(next(self._events))
             return
-        self.document.keys[inner] = Spot(event.start_mark.line + 1, event.start_mark.column + 1, name)
+        self.document.keys[inner] = Spot(event.start_mark.line + 1, event.start_mark.column + 1)
         result[name] = self._value(next(self._events), inner)
 
     def _sequence(self, path: Path_) -> list[Any]:
@@ -298,17 +303,16 @@ class _Reader:
             event = next(self._events)
             depth += isinstance(event, CollectionStartEvent) - isinstance(event, CollectionEndEvent)
 
-    def _scalar(self, event: Any, text: str, path: Path_) -> Any:
-        """YAML 1.2's core types; quoted and block scalars are text."""
-        if event.style is not None:
-            return text
-        if _NULL.fullmatch(text):
-            return None
-        if _TRUE.fullmatch(text) or _FALSE.fullmatch(text):
-            return bool(_TRUE.fullmatch(text))
-        if _INTEGER.fullmatch(text):
-            return int(text)
-        return _number(text) if _FLOAT.fullmatch(text) else text
+
+def plain_value(text: str) -> Any:
+    """What a text without quotes means, by YAML 1.2's core types: None, bool, int, float, else text."""
+    if _NULL.fullmatch(text):
+        return None
+    if _TRUE.fullmatch(text) or _FALSE.fullmatch(text):
+        return bool(_TRUE.fullmatch(text))
+    if _INTEGER.fullmatch(text):
+        return int(text)
+    return _number(text) if _FLOAT.fullmatch(text) else text
 
 
 def _number(text: str) -> float | str:

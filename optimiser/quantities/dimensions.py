@@ -80,15 +80,15 @@ _ALL = (
         "coefficient", "W/m2/K", "W/m2/K", "a heat transfer coefficient", "300", low=0.0, low_open=True
     ),
     Dimension("molar_mass", "kg/mol", "g/mol", "a molar mass", "17.03", low=0.0, low_open=True),
-    Dimension("amount_energy", "J/mol", "kJ/mol", "an energy for each mole", "46"),
-    Dimension("amount_entropy", "J/mol/K", "J/mol/K", "an entropy for each mole", "100"),
+    Dimension("molar_energy", "J/mol", "kJ/mol", "an energy for each mole", "46"),
+    Dimension("molar_entropy", "J/mol/K", "J/mol/K", "an entropy for each mole", "100"),
     Dimension("fraction", "-", "%", "a fraction", "5", low=0.0, high=1.0, bare=True, refused=("wt%",)),
     Dimension(
         "mass_fraction", "-", "%", "a mass fraction", "5", low=0.0, high=1.0, bare=True, refused=("mol%",)
     ),
     Dimension("ratio", "-", "-", "a ratio, which has no unit", "4", low=0.0, bare=True),
-    Dimension("time", "s", "year", "a time", "10", low=0.0, low_open=True),
-    Dimension("duration", "s", "h", "hours of a year", "8000", low=0.0, low_open=True),
+    Dimension("years", "s", "year", "a time", "10", low=0.0, low_open=True),
+    Dimension("hours", "s", "h", "hours of a year", "8000", low=0.0, low_open=True),
     Dimension("money", "money", "money", "an amount of money", "1000000"),
     Dimension("money_per_year", "money/year", "money/year", "money a year", "1000000"),
     Dimension("energy_price", "money/J", "money/kWh", "a price of energy", "0.07", low=0.0),

@@ -6,7 +6,7 @@ import math
 import re
 from dataclasses import dataclass
 
-from optimiser.quantities.amounts import Limit, Quantity, Setting, from_shown
+from optimiser.quantities.amounts import Limit, Quantity, Setting, from_shown, number_text
 from optimiser.quantities.dimensions import DIMENSIONS, Dimension, powers_of
 from optimiser.quantities.nearest import nearest_name
 from optimiser.quantities.units import UNIT_NAMES, UnknownUnit, currency_in, parse_unit
@@ -97,15 +97,15 @@ def _ends(text: str, kind: Dimension, money: Money) -> tuple[float, float, str]:
         return value.si, value.si, value.unit
     if len(parts) != 2 or not all(parts):
         raise UnitProblem(text, f"a value or a range with two ends, such as `{_range_sample(kind, money)}`")
-    last = _split(parts[1], kind, money, whole=text)
-    unit = last[1]
-    first = _split(parts[0], kind, money, fallback=unit, whole=text)
-    if first[1] != unit:
-        raise UnitProblem(text, f"both ends in one unit, such as `{_range_sample(kind, money)}`")
-    (low, shown), (high, _) = (_si(text, number, unit, kind, money) for number, unit in (first, last))
+    units = [match[2] if (match := _NUMBER.fullmatch(part)) else "" for part in parts]
+    ends = [_split(part, kind, money, units[1 - k], text) for k, part in enumerate(parts)]
+    (low, unit), (high, other) = (_si(text, number, unit, kind, money) for number, unit in ends)
+    if other != unit:
+        # In the unit of the lower end, and such that the text of the range reads back to the same value.
+        high = from_shown(float(number_text(high, unit, kind.name)), unit, kind.name)
     if low > high:
         raise UnitProblem(text, "a range from its lower to its higher end; turn the two round")
-    return low, high, shown
+    return low, high, unit
 
 
 def _range_sample(kind: Dimension, money: Money) -> str:
