@@ -10,6 +10,7 @@ from optimiser import __version__
 from optimiser.findings import result
 from optimiser.findings.audits import audit_point
 from optimiser.findings.beds import bed_rows
+from optimiser.findings.refit import refit
 from optimiser.findings.run import Workshop, best_attempt, open_workshop, optimise
 from optimiser.findings.thorough import neighbours
 from optimiser.findings.units import Units
@@ -61,7 +62,8 @@ def solve_case(
     best = best_attempt(attempts)
     answer = _without_point(case, "failed", "no start could be computed", seed, starts)
     if best is not None and best.ending is not None:
-        answer |= _with_point(workshop, best.ending, thorough=thorough, progress=progress)
+        ending = refit(workshop, best.ending)
+        answer |= _with_point(workshop, ending, thorough=thorough, progress=progress)
     answer["starts"] = [_start_row(workshop, attempt) for attempt in attempts]
     answer["warnings"] = answer.get("warnings", []) + _spread_warning(attempts, best)
     workshop.timing["total"] = time.perf_counter() - clock

@@ -11,6 +11,7 @@ import math
 from typing import Any
 
 from optimiser.chemistry.equilibrium import equilibrium_extents
+from optimiser.engineering.flow import ergun_gradient
 from optimiser.findings.result import number
 from optimiser.findings.run import Workshop
 from optimiser.inputs.case import BedStep
@@ -39,32 +40,49 @@ def fit_factors(workshop: Workshop) -> None:
         block = workshop.section.model.component(f"reactor_{step.name}")
         for k, value in enumerate(coefficients):
             block.damkohler[k].set_value(value)
+        block.fall_share.set_value(_fall_share(workshop, step, bed))
     workshop.nlp.refresh()
 
 
 def _fit(workshop: Workshop, step: BedStep, bed: Any) -> tuple[float, float, float, float]:
     flows = [number(n) for n in bed.inlet.flows]
-    state = (number(bed.inlet.temperature), number(bed.inlet.pressure), number(bed.volume))
-    temperature, pressure, volume = state
-    base = _log_number(workshop, step, flows, state)
-    a = (_log_number(workshop, step, flows, (temperature, pressure, volume * (1 + _STEP))) - base) / math.log1p(_STEP)
-    b = (_log_number(workshop, step, flows, (temperature, pressure * (1 + _STEP), volume)) - base) / math.log1p(_STEP)
+    temperature, pressure, volume = (number(v) for v in (bed.inlet.temperature, bed.inlet.pressure, bed.volume))
+
+    def log_number(t: float, p: float, v: float) -> float:
+        return _log_number(workshop, step, flows, (t, p), (v, number(bed.diameter)))
+
+    base, grown = log_number(temperature, pressure, volume), math.log1p(_STEP)
+    a = (log_number(temperature, pressure, volume * (1 + _STEP)) - base) / grown
+    b = (log_number(temperature, pressure * (1 + _STEP), volume) - base) / grown
     warmer = temperature * (1 + 0.2 * _STEP)
-    rise = 1.0 / warmer - 1.0 / temperature
-    e = -(_log_number(workshop, step, flows, (warmer, pressure, volume)) - base) / rise
+    e = -(log_number(warmer, pressure, volume) - base) / (1.0 / warmer - 1.0 / temperature)
     c = base - a * math.log(volume / sum(flows)) - b * math.log(pressure / 1e7)
     c += e * (1.0 / temperature - 1.0 / REFERENCE_TEMPERATURE)
     return c, a, b, e
 
 
+def _fall_share(workshop: Workshop, step: BedStep, bed: Any) -> float:
+    """Fall of the squared pressure along the integrated bed over what the outlet's gradient would make of it."""
+    flows = [number(n) for n in bed.inlet.flows]
+    pressure = number(bed.inlet.pressure)
+    sizes = (number(bed.volume), number(bed.diameter))
+    profile = workshop.forward.kinetic_bed(step, flows, (number(bed.inlet.temperature), pressure), sizes)
+    catalyst, mixture = workshop.chemistry.catalyst, workshop.chemistry.mixture
+    out = (float(profile.temperature[-1]), float(profile.pressure[-1]))
+    flux = sum(n * m for n, m in zip(flows, mixture.molar_mass, strict=True)) * profile.length / sizes[0]
+    density = float(mixture.gas(*out, profile.flows.tolist()).density)
+    viscosity = float(catalyst.viscosity(out[0]))
+    gradient = ergun_gradient(flux, density, viscosity, catalyst.pellet_diameter, catalyst.void)
+    return float((pressure**2 - out[1] ** 2) / (2.0 * out[1] * gradient * profile.length))
+
+
 def _log_number(
-    workshop: Workshop, step: BedStep, flows: list[float], state: tuple[float, float, float]
+    workshop: Workshop, step: BedStep, flows: list[float], state: tuple[float, float], sizes: tuple[float, float]
 ) -> float:
-    """ln Da of the kinetic bed at an inlet temperature, pressure and volume."""
-    temperature, pressure, volume = state
-    outlet = workshop.forward.kinetic_bed(step, flows, temperature, pressure, volume)
-    most = equilibrium_extents(workshop.chemistry, flows, outlet.temperature, outlet.pressure)
-    factor = min(float(outlet.extents[0]) / float(most[0]), _MOST)
+    """ln Da of the kinetic bed at an inlet temperature and pressure, with a volume and diameter."""
+    outlet = workshop.forward.kinetic_bed(step, flows, state, sizes)
+    most = equilibrium_extents(workshop.chemistry, flows, float(outlet.temperature[-1]), float(outlet.pressure[-1]))
+    factor = min(max(float(outlet.extents[-1, 0]) / float(most[0]), 1e-6), _MOST)
     return math.log(-math.log1p(-factor))
 
 

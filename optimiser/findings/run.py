@@ -53,9 +53,9 @@ class Workshop:
         return self.completion.complete(self.nlp.start())
 
     def positions(self) -> dict[str, list[float]]:
-        """Where each bed is asked for: at the points of its collocation."""
+        """Where each bed is asked for: at the points of its collocation, or at its outlet alone."""
         beds = [step for step in self.case.reactor if isinstance(step, BedStep)]
-        return {bed.name: point_positions(bed.elements) for bed in beds}
+        return {b.name: point_positions(b.elements) if b.rate == "kinetic" else [1.0] for b in beds}
 
     def watch(self, *_: float) -> bool:
         """Whether the solver should go on."""
@@ -115,6 +115,7 @@ def optimise(
 ) -> list[Attempt]:
     """Solve from several starts; all attempts, by index."""
     points = starting_setpoints(workshop.case, starts, seed)
+    prepare_factors(workshop, points[0])
     chosen = backend or default_backend()
 
     def solve_one(index: int) -> Ending:
@@ -131,6 +132,15 @@ def optimise(
         attempts = run_attempts(solve_one, len(points), done=done, processes=processes)
         workshop.timing["starts"] = time.perf_counter() - clock
     return attempts
+
+
+def prepare_factors(workshop: Workshop, setpoints: dict[str, float]) -> None:
+    """Fit the beds that are told by a Damkohler number at the first start, for all of them."""
+    from optimiser.findings.refit import factor_steps, fit_factors
+
+    if factor_steps(workshop):
+        workshop.nlp.load(workshop.start(setpoints))
+        fit_factors(workshop)
 
 
 def _told(attempt: Attempt) -> str:

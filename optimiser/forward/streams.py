@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -11,8 +11,10 @@ from numpy.typing import NDArray
 from optimiser.chemistry.mixture import Mixture
 
 Floats = NDArray[np.float64]
-SETTLED = 1e-13
+SETTLED = 1e-12
 ROUNDS = 300
+COLDEST, HOTTEST = 120.0, 2500.0
+"""Temperatures between which a state is looked for, K."""
 
 
 class StateProblem(ArithmeticError):
@@ -50,30 +52,46 @@ def gas(name: str, flows: Sequence[float] | Floats, temperature: float, pressure
 
 
 def gas_temperature(mixture: Mixture, flows: Floats, pressure: float, enthalpy: float, guess: float) -> float:
-    """Temperature of a gas with an enthalpy flow (W), by secant; K."""
+    """Temperature of a gas with an enthalpy flow (W), K."""
     n = flows.tolist()
 
     def gap(temperature: float) -> float:
         return float(mixture.gas(temperature, pressure, n).enthalpy) - enthalpy
 
-    return _secant(gap, guess, f"a gas of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
+    return _rising_root(gap, guess, f"a gas of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
 
 
-def _secant(gap: object, guess: float, what: str) -> float:
-    """Root in temperature, K."""
-    call = gap
-    x0, x1 = guess, guess + 1.0
-    g0, g1 = call(x0), call(x1)  # type: ignore[operator]
-    for _ in range(60):
-        if g1 == g0:
-            return x1
-        step = max(-80.0, min(80.0, -g1 * (x1 - x0) / (g1 - g0)))
-        x0, g0 = x1, g1
-        x1 = min(max(x1 + step, 120.0), 2500.0)
-        g1 = call(x1)  # type: ignore[operator]
-        if abs(x1 - x0) < 1e-9:
-            return x1
-    raise StateProblem(f"no temperature found for {what}")
+def _rising_root(gap: Callable[[float], float], guess: float, what: str) -> float:
+    """Temperature at which a rising function is zero, K: bracketed, then by the Illinois method.
+
+    Enthalpy rises with temperature, with a kink where a phase appears; a bracket cannot be thrown off by it.
+    """
+    low, high = guess, guess
+    below = above = gap(guess)
+    width = 2.0
+    while below > 0.0 and low > COLDEST:
+        high, above = low, below
+        low = max(low - width, COLDEST)
+        below, width = gap(low), 2.0 * width
+    while above < 0.0 and high < HOTTEST:
+        low, below = high, above
+        high = min(high + width, HOTTEST)
+        above, width = gap(high), 2.0 * width
+    if below > 0.0 or above < 0.0:
+        raise StateProblem(f"no temperature found for {what}")
+    for _ in range(100):
+        if abs(high - low) < 1e-10 or above == below:
+            break
+        middle = high - above * (high - low) / (above - below)
+        value = gap(middle)
+        if value * above < 0.0:
+            low, below = high, above
+        else:
+            below *= 0.5
+        moved, high, above = abs(middle - high), middle, value
+        if value == 0.0 or moved < 1e-10:
+            break
+    return high
 
 
 def flash(mixture: Mixture, name: str, flows: Floats, temperature: float, pressure: float) -> Stream:
@@ -97,7 +115,7 @@ def flash(mixture: Mixture, name: str, flows: Floats, temperature: float, pressu
         fresh = fresh - _ln_phi(mixture, y, temperature, pressure, liquid=False)
         moved = float(np.max(np.abs(fresh - ln_k)))
         ln_k = fresh
-        if moved < SETTLED * 10:
+        if moved < SETTLED:
             break
     if not 0.0 < share < 1.0:
         return gas(name, flows, temperature, pressure)
@@ -156,10 +174,10 @@ def _rachford_rice(z: Floats, k: Floats, guess: float) -> float:
 def flash_at_enthalpy(
     mixture: Mixture, name: str, flows: Floats, pressure: float, enthalpy: float, guess: float
 ) -> Stream:
-    """Both phases at a pressure and an enthalpy flow (W); the temperature is found by secant."""
+    """Both phases at a pressure and an enthalpy flow (W); the temperature is found."""
 
     def gap(temperature: float) -> float:
         return flash(mixture, name, flows, temperature, pressure).enthalpy(mixture) - enthalpy
 
-    temperature = _secant(gap, guess, f"{name} of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
+    temperature = _rising_root(gap, guess, f"{name} of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
     return flash(mixture, name, flows, temperature, pressure)

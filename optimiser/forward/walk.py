@@ -106,6 +106,18 @@ class Section:
         add_costs(self, walk)
         return walk
 
+    def kinetic_bed(
+        self, step: BedStep, flows: Sequence[float], state: tuple[float, float], sizes: tuple[float, float]
+    ) -> BedProfile:
+        """A bed by its rate law alone, whatever `rate` the case states.
+
+        Args:
+            flows: of the inlet, mol/s.
+            state: its temperature K and pressure Pa.
+            sizes: volume m3 and diameter m.
+        """
+        return self.integrator.integrate(step, np.asarray(flows, dtype=float), *state, sizes)
+
     def round_trip(
         self, setpoints: Mapping[str, float], fresh: Floats, recycle: Floats, tolerance: float
     ) -> tuple[Stream, Stream, dict[str, float]]:

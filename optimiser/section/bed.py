@@ -11,7 +11,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
-from pyomo.core import Block
+from pyomo.core import Block, Param
 
 from optimiser.engineering.flow import ergun_gradient
 from optimiser.inputs.case import BedStep
@@ -181,7 +181,9 @@ def build_factor_points(
     point = _point(frame, block.outlet_point, inlet, sizes)
     unit = frame.nominal("pressure")
     fall = (point.pressure * point.pressure - inlet.pressure * inlet.pressure) / unit**2
-    frame.equation(block.outlet_point, "pressure_fall", fall + sizes[1] * point.fall / unit == 0)
+    # The gradient is that of the outlet; a bed that is fitted to its rate law is fitted in this too.
+    block.fall_share = Param(mutable=True, initialize=1.0)
+    frame.equation(block.outlet_point, "pressure_fall", fall + block.fall_share * sizes[1] * point.fall / unit == 0)
     close_by_factor(frame, block, step, inlet, point, sizes[0])
     return [point]
 

@@ -60,7 +60,7 @@ class _Cap:
 def _cap(frame: Frame) -> _Cap:
     names = frame.chemistry.products
     critical = max(s.critical_temperature for s in frame.mixture.species if s.name in names)
-    at = 0.85 * critical
+    at = 0.9 * critical
     return _Cap(at, 7.0 * critical / (at * at))
 
 

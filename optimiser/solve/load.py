@@ -51,7 +51,7 @@ def _load_flash(section: SectionModel, flash: Any, stream: Any) -> None:
     if total > 1e-9 * float(vapour.sum()):
         fractions = liquid / total
     else:
-        cap = 0.85 * max(
+        cap = 0.9 * max(
             s.critical_temperature for s in mixture.species if s.name in section.frame.chemistry.products
         )
         fractions, stability = _shadow(mixture, vapour, min(temperature, cap), pressure)
