@@ -52,7 +52,7 @@ def validated(
 def _problem(kind: type[BaseModel], document: Document, error: Mapping[str, Any]) -> InputProblem:
     path, code, context = _in_file(error["loc"]), error["type"], error.get("ctx", {})
     if code == "input":
-        read = context["read"]
+        read = document.text(path) or context["read"]
         return document.problem(path, read, context["wanted"], context["nearest"])
     if code == "extra_forbidden":
         return _unknown(kind, document, path)

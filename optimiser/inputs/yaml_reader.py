@@ -36,7 +36,7 @@ _FLOAT = re.compile(r"[-+]?(?:\.[0-9]+|[0-9]+(?:\.[0-9]*)?)(?:[eE][-+]?[0-9]+)?"
 
 @dataclass(frozen=True)
 class Spot:
-    """Line and column counted from 1, and the text that stands there (empty for lists and mappings)."""
+    """Line and column counted from 1, and the text of a value (empty for lists, mappings and keys)."""
 
     line: int
     column: int
@@ -96,13 +96,16 @@ class Document:
         return InputProblem(self.file, line, column, self.dotted(path), found, wanted, nearest)
 
     def dotted(self, path: Path_) -> str:
-        """The path as users write it: items of a list go by their name where they have one."""
-        parts, holder = [], self.data
+        """The path as users write it: items go by their names, stages without the name of their list."""
+        parts: list[str] = []
+        holder = self.data
         for part in path:
             inside = isinstance(holder, list) and isinstance(part, int) and 0 <= part < len(holder)
             known = isinstance(holder, dict) and part in holder
             holder = holder[part] if inside or known else None
             name = _name_of(holder) if inside else None
+            if name is not None and parts[-1] == "stages":
+                parts.pop()
             parts.append(str(part) if name is None else name)
         return ".".join(parts)
 
@@ -161,14 +164,17 @@ def parse_document(text: str, file: str) -> Document:
     from ruamel.yaml import YAML
     from ruamel.yaml.error import MarkedYAMLError, YAMLError
 
-    if _GREATER not in text:
-        text = _LEADING_GREATER.sub(rf"\1{_GREATER}", text)
-    reader = _Reader(file)
+    marked = "" if _GREATER in text else _GREATER
+    if marked:
+        text = _LEADING_GREATER.sub(rf"\1{marked}", text)
+    reader = _Reader(file, marked)
     try:
         reader.read(YAML(typ="safe", pure=True).parse(text))
     except MarkedYAMLError as problem:
         reader.problems.append(_malformed(problem, file, text))
-    except (YAMLError, RecursionError) as problem:
+    except _TooDeep:
+        pass  # It has been told; what lies deeper would take long to read and could not be used.
+    except YAMLError as problem:
         reader.problems.append(
             InputProblem(file, None, None, "", "", f"readable YAML ({_first_line(problem)})")
         )
@@ -196,11 +202,20 @@ def _first_line(problem: Any) -> str:
     return str(problem).strip().partition("\n")[0]
 
 
-class _Reader:
-    """Builds a document from YAML's events and collects what is not allowed."""
+class _TooDeep(Exception):
+    """Too many levels within one another."""
 
-    def __init__(self, file: str) -> None:
+
+class _Reader:
+    """Builds a document from YAML's events and collects what is not allowed.
+
+    Args:
+        marked: the sign that stands for `>` in the text, empty for none.
+    """
+
+    def __init__(self, file: str, marked: str) -> None:
         self.document = Document(file, None)
+        self._marked = marked
         self.problems: list[InputProblem] = []
         self._events: Iterator[Any] = iter(())
 
@@ -234,17 +249,22 @@ class _Reader:
             self._fault(event, path, f"*{event.anchor}", "the value itself; aliases are not understood")
             return None
         self._plainness(event, path)
-        text = event.value.replace(_GREATER, ">") if isinstance(event, ScalarEvent) else ""
-        self.document.values[path] = Spot(event.start_mark.line + 1, event.start_mark.column + 1, text)
+        text = self._restored(event.value) if isinstance(event, ScalarEvent) else ""
+        spot = Spot(event.start_mark.line + 1, event.start_mark.column + 1, text)
+        # YAML finds a missing value only where the next one begins; its key is the better place.
+        missing = text == "" and isinstance(event, ScalarEvent) and event.style is None
+        self.document.values[path] = self.document.keys.get(path, spot) if missing else spot
         if len(path) > DEEPEST:
             self._fault(event, path[:DEEPEST], "", f"at most {DEEPEST} levels within one another")
-            self._skip(event)
-            return None
+            raise _TooDeep
         if isinstance(event, MappingStartEvent):
             return self._mapping(path)
         if isinstance(event, SequenceStartEvent):
             return self._sequence(path)
         return text if event.style is not None else plain_value(text)
+
+    def _restored(self, text: str) -> str:
+        return text.replace(self._marked, ">") if self._marked else text
 
     def _plainness(self, event: Any, path: Path_) -> None:
         if event.anchor is not None:
@@ -271,14 +291,14 @@ class _Reader:
 
     def _entry(self, event: Any, path: Path_, result: dict[str, Any]) -> None:
         """One key with its value; a second value under one key is told and left out."""
-        name = event.value.replace(_GREATER, ">")
+        name = self._restored(event.value)
         inner = (*path, name)
         if name in result:
             first = self.document.keys[inner].line
             self._fault(event, inner, name, f"each key once; it stands in line {first} too")
             self._skip(next(self._events))
             return
-        self.document.keys[inner] = Spot(event.start_mark.line + 1, event.start_mark.column + 1, name)
+        self.document.keys[inner] = Spot(event.start_mark.line + 1, event.start_mark.column + 1)
         result[name] = self._value(next(self._events), inner)
 
     def _sequence(self, path: Path_) -> list[Any]:
