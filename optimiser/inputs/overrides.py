@@ -10,8 +10,9 @@ import re
 from collections.abc import Sequence
 from typing import Any
 
+from optimiser.inputs.document import NAMING_KEYS, Document, Path_, Spot
 from optimiser.inputs.errors import InputError, InputProblem, nearest
-from optimiser.inputs.yaml_reader import NAMING_KEYS, Document, Path_, Spot, plain_value
+from optimiser.inputs.yaml_reader import plain_value
 
 # Mappings whose paths leave out the list inside them.
 _SHORTCUTS = {"compression": "stages"}

@@ -7,13 +7,15 @@ from pathlib import Path
 from typing import Any
 
 from optimiser.inputs.case import Case
-from optimiser.inputs.checks import Draft, check
+from optimiser.inputs.checks import check
+from optimiser.inputs.document import Document
+from optimiser.inputs.draft import Draft
 from optimiser.inputs.errors import InputError, InputProblem
 from optimiser.inputs.lookup import find_case
 from optimiser.inputs.overrides import apply_sets
 from optimiser.inputs.paths import mapping, paths_of
 from optimiser.inputs.validation import validated
-from optimiser.inputs.yaml_reader import Document, parse_document, read_document
+from optimiser.inputs.yaml_reader import parse_document, read_document
 from optimiser.quantities import CURRENCIES, Money, UnitProblem, parse_quantity
 
 

@@ -7,9 +7,9 @@ from typing import Any, TypeVar, get_args
 
 from pydantic import BaseModel, ValidationError
 
+from optimiser.inputs.document import Document, Path_
 from optimiser.inputs.errors import InputProblem, nearest
 from optimiser.inputs.fields import Kind
-from optimiser.inputs.yaml_reader import Document, Path_
 
 Checked = TypeVar("Checked", bound=BaseModel)
 

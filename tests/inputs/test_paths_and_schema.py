@@ -5,7 +5,7 @@ from dataclasses import asdict
 import pytest
 from strategies.plain_case import MODEL, PLAIN
 
-from optimiser.inputs import InputError, checks, describe_schema, lookup, parse_case
+from optimiser.inputs import InputError, describe_schema, lookup, money_checks, parse_case
 from optimiser.inputs.money import ASSET_SIZES, COST_YEAR
 from optimiser.inputs.paths import result_paths
 from optimiser.quantities import CURRENCIES, DIMENSIONS, parse_setting
@@ -87,7 +87,7 @@ def test_rows_of_the_table(path, dimension, default, required):
 
 
 def test_the_year_of_the_defaults_has_an_index():
-    assert COST_YEAR in checks.indexed_years()
+    assert COST_YEAR in money_checks.indexed_years()
 
 
 def test_shipped_files_are_found_by_name():

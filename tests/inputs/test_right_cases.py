@@ -121,8 +121,8 @@ def test_shares_of_two_streams():
 
 
 def test_beds_by_approach_need_no_rate_law():
-    bare = SimpleNamespace(**{**vars(MODEL), "rate_laws": {}})
-    with pytest.raises(InputError, match="no rate law"):
+    bare = SimpleNamespace(**{**vars(MODEL), "law_of": lambda name: None})
+    with pytest.raises(InputError, match="no rate law for synthesis"):
         parse_case(PLAIN, model=bare)
     text = PLAIN.replace("- bed: bed1", "- bed: bed1\n    rate: approach\n    approach_temperature: 15 K")
     text = text.replace("- bed: bed2", "- bed: bed2\n    rate: approach\n    approach_fraction: 80 .. 95 %")

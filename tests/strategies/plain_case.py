@@ -4,9 +4,9 @@ from types import SimpleNamespace
 
 MODEL = SimpleNamespace(
     species=tuple(SimpleNamespace(name=name) for name in ("H2", "N2", "NH3", "Ar", "CH4")),
-    reactions={"synthesis": {"N2": -0.5, "H2": -1.5, "NH3": 1.0}},
-    rate_laws={"synthesis": None},
-    catalyst=SimpleNamespace(price=SimpleNamespace(unit="EUR/kg")),
+    reactions=(SimpleNamespace(name="synthesis", species={"N2": -0.5, "H2": -1.5, "NH3": 1.0}),),
+    law_of=lambda name: name,
+    catalyst=SimpleNamespace(price=14.0, currency="EUR"),
     products=("NH3",),
     key_reactant="N2",
 )
