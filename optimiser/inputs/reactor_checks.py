@@ -73,7 +73,7 @@ def _coolers(draft: Draft) -> Problems:
         if not before_bed and "outlet_temperature" not in step and step.get("sink") in _OTHER_SINKS:
             yield draft.document.problem(path, "", "`outlet_temperature:` where no bed follows")
         for key, sink in _SINK_KEYS.items():
-            if key in step and step.get("sink") != sink:
+            if key in step and step.get("sink") in {"feed", *_OTHER_SINKS} - {sink}:
                 yield draft.document.problem((*path[:2], key), None, f"`sink: {sink}` beside it", key=True)
 
 

@@ -53,10 +53,17 @@ def case_from(document: Document, sets: Sequence[str], model: Any) -> Case:
         "problems": problems,
     }
     case, found = validated(Case, document, context)
-    problems = _each_place_once([*problems, *found, *check(draft)])
+    problems = _each_place_once(_without_misspelt([*problems, *found, *check(draft)]))
     if problems or case is None:
         raise InputError(problems)
     return case.model_copy(update={"path": document.path, "sha256": document.sha256})
+
+
+def _without_misspelt(problems: list[InputProblem]) -> list[InputProblem]:
+    """Without the missing keys that stand there misspelt."""
+    misspelt = [p for p in problems if p.nearest and p.path.endswith(p.read)]
+    meant = {p.path.removesuffix(p.read) + str(p.nearest) for p in misspelt}
+    return [p for p in problems if p.read or p.path not in meant]
 
 
 def _each_place_once(problems: list[InputProblem]) -> list[InputProblem]:

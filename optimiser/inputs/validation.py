@@ -45,7 +45,8 @@ def validated(
     try:
         made = kind.model_validate(data, context=dict(context))
     except ValidationError as problem:
-        return None, problems + [_problem(kind, document, dict(error)) for error in problem.errors()]
+        found = [_problem(kind, document, dict(error)) for error in problem.errors()]
+        return None, problems + found
     return (None if problems else made), problems
 
 
