@@ -9,18 +9,9 @@ from pydantic import BeforeValidator, Discriminator, Field, StrictStr, Tag, Vali
 
 from optimiser.inputs.fields import Section, money_of, said
 from optimiser.inputs.money import Economics, Prices
-from optimiser.inputs.plant import (
-    BedStep,
-    Compression,
-    Condensation,
-    CoolStep,
-    Feed,
-    FeedStream,
-    Loop,
-    Stage,
-    Utilities,
-    Vessels,
-)
+from optimiser.inputs.plant import Compression, Feed, FeedStream, Loop, Stage
+from optimiser.inputs.removal import Condensation, Utilities, Vessels
+from optimiser.inputs.steps import BedStep, CoolStep
 from optimiser.quantities import Limit, Setting
 
 __all__ = ["BedStep", "Case", "CoolStep", "FeedStream", "Objective", "Stage"]

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from optimiser.inputs.document import Document
 from optimiser.inputs.errors import InputProblem, nearest
-from optimiser.inputs.yaml_reader import Document
 from optimiser.quantities import DIMENSIONS, Limit, Money, UnitProblem, parse_limit
 
 

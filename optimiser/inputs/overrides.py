@@ -10,8 +10,9 @@ import re
 from collections.abc import Sequence
 from typing import Any
 
+from optimiser.inputs.document import NAMING_KEYS, Document, Path_, Spot
 from optimiser.inputs.errors import InputError, InputProblem, nearest
-from optimiser.inputs.yaml_reader import NAMING_KEYS, Document, Path_, Spot, plain_value
+from optimiser.inputs.yaml_reader import plain_value
 
 # Mappings whose paths leave out the list inside them.
 _SHORTCUTS = {"compression": "stages"}
@@ -165,16 +166,21 @@ def _moved_limit(before: str, side: str, value: str) -> str:
     """A limit with one end moved; the other end stays."""
     if ".." in before:
         return _moved(before, side, value)
-    sign = before[:2]
-    if not before or sign == _SIGNS[side]:
+    sign = next((s for s in ("<=", ">=", "≤", "≥") if before.startswith(s)), "")
+    if not sign or {"≤": "<=", "≥": ">="}.get(sign, sign) == _SIGNS[side]:
         return f"{_SIGNS[side]} {value}"
-    other = before[2:].strip()
-    return f"{other} .. {value}" if side == "high" else f"{value} .. {other}"
+    return _moved(before.removeprefix(sign).strip(), side, value)
 
 
 def _moved(before: str, side: str, value: str) -> str:
-    """A range with one end moved; a held value is a range whose ends are equal."""
+    """A range with one end moved, in its own unit or in another; a held value has equal ends."""
     low, dots, high = (part.strip() for part in before.partition(".."))
-    if not dots:
-        high = low
-    return f"{low} .. {value}" if side == "high" else f"{value} .. {high}"
+    unit = next((u for u in map(_unit, (high, low)) if u), "-")
+    kept = (high if side == "low" else low) if dots else low
+    moved, kept = (end if _unit(end) else f"{end} {unit}" for end in (value, kept))
+    return f"{kept} .. {moved}" if side == "high" else f"{moved} .. {kept}"
+
+
+def _unit(text: str) -> str:
+    """What follows the number, empty where nothing does."""
+    return re.sub(r"^\s*[-+]?[\d.]+(?:[eE][-+]?\d+)?\s*", "", text)

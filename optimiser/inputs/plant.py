@@ -1,37 +1,26 @@
-"""The plant as a case states it, piece by piece. Keys of the file are the names of the fields."""
+"""Feed, compression and loop as a case states them. Keys of the file are the names of the fields."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from typing import Annotated, Any, Literal
+from typing import Annotated, Any
 
-from pydantic import AfterValidator, BeforeValidator, Field, StrictInt, StrictStr, ValidationInfo
+from pydantic import AfterValidator, BeforeValidator, Field, StrictStr, ValidationInfo
 
 from optimiser.inputs.fields import (
-    Allowance,
     Coefficient,
-    Density,
-    Difference,
-    DifferenceSetting,
     Efficiency,
-    Factor,
     FeedPrice,
     FlowSetting,
     Kind,
-    LengthSetting,
     MassFlowSetting,
     Pressure,
     PressureDrop,
     PressureSetting,
-    Ratio,
     RatioSetting,
     Section,
     ShareSetting,
-    Stress,
     Temperature,
-    TemperatureSetting,
-    Velocity,
-    VolumeSetting,
     fault,
     said,
 )
@@ -150,174 +139,3 @@ class Loop(Section):
     circulator_efficiency: Efficiency = said(
         "75 %", meaning="isentropic", reason="a stage of small pressure ratio, 70 to 80 %"
     )
-
-
-class BedStep(Section):
-    """An adiabatic bed of catalyst."""
-
-    bed: Name = said(meaning="its name")
-    rate: Literal["kinetic", "approach", "damkohler"] = said(
-        "kinetic",
-        meaning="rate law, stated approach to equilibrium, or approach fitted to the rate law",
-        reason="only a rate law knows that a cold catalyst sleeps",
-    )
-    inlet_temperature: TemperatureSetting = said(meaning="of the gas that enters")
-    volume: VolumeSetting = said(meaning="of catalyst as packed")
-    diameter: LengthSetting | None = said(None, meaning="inside; or state length_over_diameter")
-    length_over_diameter: RatioSetting | None = said(None, meaning="or state diameter")
-    activity: Efficiency = said(
-        "70 %",
-        meaning="of the catalyst, 100 % when fresh",
-        reason="sized for the end of a run, not its start",
-    )
-    elements: Annotated[StrictInt, Field(ge=2, le=60)] = said(
-        8, meaning="pieces into which the bed is cut for the calculation", reason="outlets within 0.01 K"
-    )
-    approach_fraction: ShareSetting | None = said(
-        None, meaning="extent over extent at equilibrium (rate: approach)"
-    )
-    approach_temperature: DifferenceSetting | None = said(
-        None, meaning="how far short of equilibrium, as a temperature difference (rate: approach)"
-    )
-
-    @property
-    def name(self) -> str:
-        """Name in paths."""
-        return self.bed
-
-    @property
-    def kind(self) -> str:
-        """`bed`."""
-        return "bed"
-
-
-class CoolStep(Section):
-    """A cooler between or after beds; its sink is what it heats."""
-
-    cool: Name = said(meaning="its name")
-    sink: Literal["feed", "steam", "boiler_feed_water", "cooling_water"] = said(meaning="what takes the heat")
-    outlet_temperature: TemperatureSetting | None = said(
-        None,
-        meaning="of the gas; left out before a bed and for the one step that closes the heating of the feed",
-    )
-    minimum_approach: Difference = said("15 K", meaning="at either end", reason="gas against gas, 15 to 30 K")
-    coefficient: Coefficient = said(
-        "300 W/m2/K",
-        meaning="heat transfer at 150 bar; it goes with pressure to the power 0.4",
-        reason="gas at 100 to 250 bar against gas or boiling water, 150 to 500 W/m2/K",
-    )
-    pressure_drop: PressureDrop = said("0.3 bar", meaning="of the gas", reason="common practice")
-    steam_pressure: Pressure = said(
-        "40 bar", meaning="of the steam raised (sink: steam)", reason="a usual header"
-    )
-    water_inlet: Temperature = said(
-        "105 degC", meaning="of the water (sink: boiler_feed_water)", reason="as it leaves a deaerator"
-    )
-    water_outlet: Temperature = said(
-        "180 degC", meaning="of the water (sink: boiler_feed_water)", reason="short of boiling above 10 bar"
-    )
-
-    @property
-    def name(self) -> str:
-        """Name in paths."""
-        return self.cool
-
-    @property
-    def kind(self) -> str:
-        """`cool`."""
-        return "cool"
-
-
-class WaterCooler(Section):
-    """Condensing cooler on cooling water."""
-
-    outlet_temperature: TemperatureSetting = said(meaning="of the gas")
-    minimum_approach: Difference = said("5 K", meaning="at either end", reason="water at both ends is cheap")
-    coefficient: Coefficient = said(
-        "400 W/m2/K", meaning="as for reactor coolers", reason="condensing beside gas at pressure, 200 to 600"
-    )
-
-
-class ColdExchanger(Section):
-    """The separator's vapour against the gas on its way to the chiller."""
-
-    recycle_temperature: TemperatureSetting = said(meaning="of the vapour as it leaves, warmed")
-    minimum_approach: Difference = said("5 K", meaning="at either end", reason="cold is dear")
-    coefficient: Coefficient = said(
-        "300 W/m2/K",
-        meaning="as for reactor coolers",
-        reason="gas against gas, in part condensing, 150 to 500",
-    )
-
-
-class Chiller(Section):
-    """Condenser cooled by boiling refrigerant; the separator stands at its outlet."""
-
-    outlet_temperature: TemperatureSetting = said(meaning="of the gas, and of the separator")
-    evaporator_approach: Difference = said(
-        "5 K", meaning="from refrigerant to outlet", reason="common practice"
-    )
-    coefficient: Coefficient = said(
-        "400 W/m2/K", meaning="as for reactor coolers", reason="condensing beside gas at pressure, 200 to 600"
-    )
-    second_law_efficiency: Efficiency = said(
-        "50 %", meaning="of the machine against Carnot", reason="industrial machines reach 45 to 60 %"
-    )
-    condenser_approach: Difference = said(
-        "8 K", meaning="from cooling water return to condensing refrigerant", reason="common practice"
-    )
-    condenser_coefficient: Coefficient = said(
-        "800 W/m2/K",
-        meaning="heat transfer of the refrigerant's condenser, at its own pressure",
-        reason="clean refrigerant against water, 600 to 1200",
-    )
-
-
-class Separator(Section):
-    """Upright vessel in which liquid and gas part."""
-
-    vapour_velocity_constant: Velocity = said(
-        "0.05 m/s", meaning="K of Souders and Brown", reason="the low end of practice, for high pressure"
-    )
-    length_over_diameter: Ratio = said("3", meaning="of the vessel", reason="common practice, 3 to 5")
-
-
-class Condensation(Section):
-    """From reactor to separator: water cooler, cold exchanger, chiller, those that there are."""
-
-    pressure_drop: PressureDrop = said(
-        "3 bar", meaning="of the train, taken at its entry", reason="common practice"
-    )
-    water_cooler: WaterCooler | None = said(None, meaning="left out where there is none")
-    cold_exchanger: ColdExchanger | None = said(None, meaning="left out where there is none")
-    chiller: Chiller | None = said(None, meaning="left out where there is none")
-    separator: Separator = said({}, meaning="at the end of the train")
-
-
-class Utilities(Section):
-    """Cooling water."""
-
-    cooling_water_supply: Temperature = said(
-        "25 degC", meaning="as it comes", reason="cooling tower in a mild climate"
-    )
-    cooling_water_return: Temperature = said("35 degC", meaning="as it leaves", reason="10 K of rise")
-
-
-class Vessels(Section):
-    """Walls of converter and separator. The converter's shell is kept at feed temperature."""
-
-    allowable_stress: Stress = said(
-        "120 MPa", meaning="at the temperature of the shell", reason="low-alloy steel, to be confirmed"
-    )
-    joint_efficiency: Efficiency = said("100 %", meaning="of welds", reason="fully examined")
-    corrosion_allowance: Allowance = said("3 mm", meaning="on every wall", reason="common practice")
-    design_pressure_factor: Factor = said(
-        "1.1", meaning="design over operating pressure", reason="common practice"
-    )
-    length_factor: Factor = said(
-        "1.25", meaning="shell over bed, in length", reason="room for heads and gas distribution, invented"
-    )
-    material_factor: Factor = said(
-        "1.5", meaning="cost over carbon steel", reason="chromium-molybdenum steel for hydrogen, from memory"
-    )
-    steel_density: Density = said("7850 kg/m3", meaning="of the wall", reason="steel")

@@ -7,13 +7,15 @@ from pathlib import Path
 from typing import Any
 
 from optimiser.inputs.case import Case
-from optimiser.inputs.checks import Draft, check
+from optimiser.inputs.checks import check
+from optimiser.inputs.document import Document
+from optimiser.inputs.draft import Draft
 from optimiser.inputs.errors import InputError, InputProblem
 from optimiser.inputs.lookup import find_case
 from optimiser.inputs.overrides import apply_sets
 from optimiser.inputs.paths import mapping, paths_of
 from optimiser.inputs.validation import validated
-from optimiser.inputs.yaml_reader import Document, parse_document, read_document
+from optimiser.inputs.yaml_reader import parse_document, read_document
 from optimiser.quantities import CURRENCIES, Money, UnitProblem, parse_quantity
 
 
@@ -51,10 +53,17 @@ def case_from(document: Document, sets: Sequence[str], model: Any) -> Case:
         "problems": problems,
     }
     case, found = validated(Case, document, context)
-    problems = _each_place_once([*problems, *found, *check(draft)])
+    problems = _each_place_once(_without_misspelt([*problems, *found, *check(draft)]))
     if problems or case is None:
         raise InputError(problems)
     return case.model_copy(update={"path": document.path, "sha256": document.sha256})
+
+
+def _without_misspelt(problems: list[InputProblem]) -> list[InputProblem]:
+    """Without the missing keys that stand there misspelt."""
+    misspelt = [p for p in problems if p.nearest and p.path.endswith(p.read)]
+    meant = {p.path.removesuffix(p.read) + str(p.nearest) for p in misspelt}
+    return [p for p in problems if p.read or p.path not in meant]
 
 
 def _each_place_once(problems: list[InputProblem]) -> list[InputProblem]:

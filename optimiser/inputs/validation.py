@@ -7,9 +7,9 @@ from typing import Any, TypeVar, get_args
 
 from pydantic import BaseModel, ValidationError
 
+from optimiser.inputs.document import Document, Path_
 from optimiser.inputs.errors import InputProblem, nearest
 from optimiser.inputs.fields import Kind
-from optimiser.inputs.yaml_reader import Document, Path_
 
 Checked = TypeVar("Checked", bound=BaseModel)
 
@@ -45,7 +45,8 @@ def validated(
     try:
         made = kind.model_validate(data, context=dict(context))
     except ValidationError as problem:
-        return None, problems + [_problem(kind, document, dict(error)) for error in problem.errors()]
+        found = [_problem(kind, document, dict(error)) for error in problem.errors()]
+        return None, problems + found
     return (None if problems else made), problems
 
 

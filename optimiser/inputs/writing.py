@@ -9,7 +9,7 @@ from typing import Any
 
 from pydantic import BaseModel
 
-from optimiser.inputs.plant import CoolStep
+from optimiser.inputs.steps import CoolStep
 from optimiser.inputs.yaml_reader import plain_value
 from optimiser.quantities import Limit, Quantity, Setting
 

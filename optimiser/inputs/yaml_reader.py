@@ -11,16 +11,14 @@ import hashlib
 import math
 import re
 from collections.abc import Iterator
-from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any
 
+from optimiser.inputs.document import Document, Path_, Spot
 from optimiser.inputs.errors import InputError, InputProblem
 
-Path_ = tuple[str | int, ...]
+__all__ = ["Document", "Path_", "parse_document", "plain_value", "read_document"]
 
-# Keys whose value names an item of a list.
-NAMING_KEYS = ("bed", "cool", "stage")
 LARGEST = 2_000_000
 DEEPEST = 20
 # Stands for `>` while YAML is parsed, so that no column moves. It belongs to Unicode's private area.
@@ -32,89 +30,6 @@ _TRUE = re.compile(r"true|True|TRUE")
 _FALSE = re.compile(r"false|False|FALSE")
 _INTEGER = re.compile(r"[-+]?[0-9]{1,18}")
 _FLOAT = re.compile(r"[-+]?(?:\.[0-9]+|[0-9]+(?:\.[0-9]*)?)(?:[eE][-+]?[0-9]+)?")
-
-
-@dataclass(frozen=True)
-class Spot:
-    """Line and column counted from 1, and the text of a value (empty for lists, mappings and keys)."""
-
-    line: int
-    column: int
-    text: str = ""
-
-
-@dataclass
-class Document:
-    """A file's data: dict, list, str, int, float, bool, None.
-
-    Attributes:
-        file: the path as the user gave it.
-        data: the whole tree.
-        path: of the file; None for a text without one.
-        sha256: of the file's bytes.
-        values, keys: place of each value, and of the key that it stands under, by path.
-        sources: paths whose values come from elsewhere (an option of the command line), with its words.
-    """
-
-    file: str
-    data: Any
-    path: Path | None = None
-    sha256: str = ""
-    values: dict[Path_, Spot] = field(default_factory=dict)
-    keys: dict[Path_, Spot] = field(default_factory=dict)
-    sources: dict[Path_, str] = field(default_factory=dict)
-
-    def location(self, path: Path_) -> tuple[int, int]:
-        """Line and column of a value; of what would hold it, where it is missing."""
-        for length in range(len(path), -1, -1):
-            spot = self.values.get(path[:length])
-            if spot is not None:
-                return spot.line, spot.column
-        return 1, 1
-
-    def text(self, path: Path_) -> str:
-        """What was written at a path; empty for lists, mappings and what is missing."""
-        spot = self.values.get(path)
-        return spot.text if spot is not None else ""
-
-    def problem(
-        self, path: Path_, read: str | None, wanted: str, nearest: str | None = None, *, key: bool = False
-    ) -> InputProblem:
-        """A problem at a path.
-
-        Args:
-            read: what was found; None for the text at the path.
-            key: whether the key is at fault, rather than its value.
-        """
-        found = self.text(path) if read is None else read
-        for length in range(len(path), 0, -1):
-            source = self.sources.get(path[:length])
-            if source is not None:
-                return InputProblem(source, None, None, self.dotted(path), found, wanted, nearest)
-        spot = self.keys.get(path) if key else None
-        line, column = (spot.line, spot.column) if spot is not None else self.location(path)
-        return InputProblem(self.file, line, column, self.dotted(path), found, wanted, nearest)
-
-    def dotted(self, path: Path_) -> str:
-        """The path as users write it: items go by their names, stages without the name of their list."""
-        parts, holder = [], self.data
-        for part in path:
-            inside = isinstance(holder, list) and isinstance(part, int) and 0 <= part < len(holder)
-            known = isinstance(holder, dict) and part in holder
-            holder = holder[part] if inside or known else None
-            name = _name_of(holder) if inside else None
-            if name is not None and parts[-1] == "stages":
-                parts.pop()
-            parts.append(str(part) if name is None else name)
-        return ".".join(parts)
-
-
-def _name_of(item: Any) -> str | None:
-    """Name of an item of a list: the value of its first key, where the list's items are named so."""
-    if not isinstance(item, dict):
-        return None
-    name = next((item[key] for key in NAMING_KEYS if key in item), None)
-    return name if isinstance(name, str) else None
 
 
 def read_document(path: str | Path, name: str | None = None) -> Document:
@@ -163,14 +78,17 @@ def parse_document(text: str, file: str) -> Document:
     from ruamel.yaml import YAML
     from ruamel.yaml.error import MarkedYAMLError, YAMLError
 
-    if _GREATER not in text:
-        text = _LEADING_GREATER.sub(rf"\1{_GREATER}", text)
-    reader = _Reader(file)
+    marked = "" if _GREATER in text else _GREATER
+    if marked:
+        text = _LEADING_GREATER.sub(rf"\1{marked}", text)
+    reader = _Reader(file, marked)
     try:
         reader.read(YAML(typ="safe", pure=True).parse(text))
     except MarkedYAMLError as problem:
         reader.problems.append(_malformed(problem, file, text))
-    except (YAMLError, RecursionError) as problem:
+    except _TooDeep:
+        pass  # It has been told; what lies deeper would take long to read and could not be used.
+    except YAMLError as problem:
         reader.problems.append(
             InputProblem(file, None, None, "", "", f"readable YAML ({_first_line(problem)})")
         )
@@ -198,11 +116,20 @@ def _first_line(problem: Any) -> str:
     return str(problem).strip().partition("\n")[0]
 
 
-class _Reader:
-    """Builds a document from YAML's events and collects what is not allowed."""
+class _TooDeep(Exception):
+    """Too many levels within one another."""
 
-    def __init__(self, file: str) -> None:
+
+class _Reader:
+    """Builds a document from YAML's events and collects what is not allowed.
+
+    Args:
+        marked: the sign that stands for `>` in the text, empty for none.
+    """
+
+    def __init__(self, file: str, marked: str) -> None:
         self.document = Document(file, None)
+        self._marked = marked
         self.problems: list[InputProblem] = []
         self._events: Iterator[Any] = iter(())
 
@@ -236,20 +163,22 @@ class _Reader:
             self._fault(event, path, f"*{event.anchor}", "the value itself; aliases are not understood")
             return None
         self._plainness(event, path)
-        text = event.value.replace(_GREATER, ">") if isinstance(event, ScalarEvent) else ""
+        text = self._restored(event.value) if isinstance(event, ScalarEvent) else ""
         spot = Spot(event.start_mark.line + 1, event.start_mark.column + 1, text)
         # YAML finds a missing value only where the next one begins; its key is the better place.
         missing = text == "" and isinstance(event, ScalarEvent) and event.style is None
         self.document.values[path] = self.document.keys.get(path, spot) if missing else spot
         if len(path) > DEEPEST:
             self._fault(event, path[:DEEPEST], "", f"at most {DEEPEST} levels within one another")
-            self._skip(event)
-            return None
+            raise _TooDeep
         if isinstance(event, MappingStartEvent):
             return self._mapping(path)
         if isinstance(event, SequenceStartEvent):
             return self._sequence(path)
         return text if event.style is not None else plain_value(text)
+
+    def _restored(self, text: str) -> str:
+        return text.replace(self._marked, ">") if self._marked else text
 
     def _plainness(self, event: Any, path: Path_) -> None:
         if event.anchor is not None:
@@ -276,7 +205,7 @@ class _Reader:
 
     def _entry(self, event: Any, path: Path_, result: dict[str, Any]) -> None:
         """One key with its value; a second value under one key is told and left out."""
-        name = event.value.replace(_GREATER, ">")
+        name = self._restored(event.value)
         inner = (*path, name)
         if name in result:
             first = self.document.keys[inner].line
