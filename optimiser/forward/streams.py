@@ -151,6 +151,25 @@ def incipient_liquid(mixture: Mixture, z: Floats, temperature: float, pressure: 
     return fractions, float(np.log(total))
 
 
+def dew_temperature(mixture: Mixture, z: Floats, pressure: float, guess: float = 320.0) -> float:
+    """Temperature at which a gas of these fractions forms its first liquid, K, to 0.01 K.
+
+    Raises:
+        StateProblem: between 200 and 500 K no liquid forms.
+    """
+    low, high = 200.0, 500.0
+    if incipient_liquid(mixture, z, low, pressure)[1] <= 0.0:
+        raise StateProblem(f"no liquid forms at {pressure / 1e5:.4g} bar above {low:.0f} K")
+    while high - low > 0.01:
+        middle = guess if low < guess < high else 0.5 * (low + high)
+        guess = -1.0
+        if incipient_liquid(mixture, z, middle, pressure)[1] > 0.0:
+            low = middle
+        else:
+            high = middle
+    return low
+
+
 def _rachford_rice(z: Floats, k: Floats, guess: float) -> float:
     """Liquid share of all, from sum of x - y = 0; bounded Newton."""
     low, high = 0.0, 1.0

@@ -101,7 +101,7 @@ def _cool(
         temperature = temperature_at(frame, block, "outlet")
     outlet: Gas | Flash
     if after_beds and step.sink != "steam":
-        outlet = build_flash(frame, f"{path}.out", block, gas.flows, temperature, pressure, may_be_hot=True)
+        outlet = build_flash(frame, f"{path}.out", block, gas.flows, temperature, pressure)
     else:
         outlet = gas_at(frame, block, "outlet", gas.flows, temperature, pressure)
         frame.stream(f"{path}.out", gas.flows, temperature, pressure)
