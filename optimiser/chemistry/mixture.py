@@ -15,7 +15,11 @@ STANDARD_PRESSURE = 1e5
 
 
 class Mixture:
-    """Species of a model in order, with their equation of state."""
+    """Species of a model in order, with their equation of state.
+
+    `vapour` is None for an ideal gas: then all gas is ideal but for phase equilibrium, which both phases keep to by the
+    cubic equation of the liquid. `liquid=True` in `phase` asks for that equation.
+    """
 
     def __init__(self, species: Sequence[Species], vapour: Cubic | None, liquid: Cubic) -> None:
         self.species = tuple(species)
@@ -45,6 +49,12 @@ class Mixture:
     def liquid(self, temperature: float, pressure: float, flows: Sequence[float]) -> Phase:
         """The liquid root; numbers only."""
         return self._solved(temperature, pressure, flows, liquid=True)
+
+    def condensing(self, temperature: float, pressure: float, flows: Sequence[float]) -> Phase:
+        """The vapour root as phase equilibrium sees it: by the liquid's equation of state; numbers only."""
+        phase = Phase(self, temperature, pressure, flows, 1.0, liquid=True)
+        phase.compressibility = phase.mix.roots()[-1]
+        return phase
 
     def _solved(self, temperature: float, pressure: float, flows: Sequence[float], *, liquid: bool) -> Phase:
         phase = Phase(self, temperature, pressure, flows, 1.0, liquid)

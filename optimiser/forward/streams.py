@@ -125,7 +125,7 @@ def flash(mixture: Mixture, name: str, flows: Floats, temperature: float, pressu
 
 
 def _ln_phi(mixture: Mixture, fractions: Floats, temperature: float, pressure: float, *, liquid: bool) -> Floats:
-    phase = mixture.liquid if liquid else mixture.gas
+    phase = mixture.liquid if liquid else mixture.condensing
     return np.array([float(v) for v in phase(temperature, pressure, (fractions / fractions.sum()).tolist()).ln_phi])
 
 

@@ -18,6 +18,8 @@ from optimiser.chemistry.mixture import Phase
 from optimiser.section.frame import Frame
 
 SMOOTHING = 1e-7
+GAS_ROOTS, LIQUID_ROOTS = (0.2, 3.0, 1.0), (1e-3, 0.8, 0.2)
+"""Bounds and start of compressibilities."""
 SUPERHEAT = 100.0
 """Superheat that counts as much as all of a stream being liquid, K."""
 
@@ -57,9 +59,10 @@ def build_flash(
         frame.equation(block, f"balance_{species}", v + liquid_flow * x - n == 0, frame.flow)
     frame.equation(block, "liquid_sum", sum(fractions) - 1.0 == 0)
     dew = frame.define(block, "dew_temperature", "temperature", temperature - superheat, 150.0, 1000.0)
-    saturated, _ = _phase(frame, block, "saturated", dew, pressure, vapour)
-    liquid, liquid_root = _phase(frame, block, "liquid", dew, pressure, fractions, liquid=True)
-    gas, _ = _phase(frame, block, "vapour", temperature, pressure, vapour)
+    # Both phases of the equilibrium by one equation of state, also where the gas is otherwise taken as ideal.
+    saturated, _ = _phase(frame, block, "saturated", dew, (pressure, vapour, True), GAS_ROOTS)
+    liquid, liquid_root = _phase(frame, block, "liquid", dew, (pressure, fractions, True), LIQUID_ROOTS)
+    gas, _ = _phase(frame, block, "vapour", temperature, (pressure, vapour, False), GAS_ROOTS)
     for k, species in enumerate(names):
         gap = log(fractions[k]) + liquid.ln_phi[k] - log(saturated.fractions[k]) - saturated.ln_phi[k]
         frame.equation(block, f"equilibrium_{species}", gap == 0)
@@ -81,13 +84,12 @@ def _phase(
     block: Any,
     name: str,
     temperature: Any,
-    pressure: Any,
-    flows: Sequence[Any],
-    *,
-    liquid: bool = False,
+    rest: tuple[Any, Sequence[Any], bool],
+    roots: tuple[float, float, float],
 ) -> tuple[Phase, Any]:
-    """A phase with its compressibility as a variable."""
-    low, high, start = (1e-3, 1.5, 0.2) if liquid else (0.2, 3.0, 1.0)
+    """A phase with its compressibility as a variable; `rest` is pressure, flows and whether by the liquid's equation."""
+    pressure, flows, liquid = rest
+    low, high, start = roots
     root = frame.variable(block, f"{name}_compressibility", "ratio", low, high, start=start)
     phase = frame.mixture.phase(temperature, pressure, flows, root, liquid=liquid)
     frame.give(root, frame.equation(block, f"{name}_state", phase.residual == 0))
@@ -97,4 +99,4 @@ def _phase(
 def _least(frame: Frame, species: str) -> float:
     """Least fraction in a liquid: without it the liquid could be the gas over again, which solves every equation."""
     products = frame.chemistry.products
-    return 0.5 if len(products) == 1 and species == products[0] else 1e-9
+    return 0.7 if len(products) == 1 and species == products[0] else 1e-9
