@@ -61,8 +61,8 @@ def gas_temperature(mixture: Mixture, flows: Floats, pressure: float, enthalpy: 
     return _rising_root(gap, guess, f"a gas of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
 
 
-def _rising_root(gap: Callable[[float], float], guess: float, what: str) -> float:
-    """Temperature at which a rising function is zero, K: bracketed, then by the Illinois method.
+def _rising_root(gap: Callable[[float], float], guess: float, what: str, precision: float = 1e-10) -> float:
+    """Temperature at which a rising function is zero, K to `precision`: bracketed, then by the Illinois method.
 
     Enthalpy rises with temperature, with a kink where a phase appears; a bracket cannot be thrown off by it.
     """
@@ -80,7 +80,7 @@ def _rising_root(gap: Callable[[float], float], guess: float, what: str) -> floa
     if below > 0.0 or above < 0.0:
         raise StateProblem(f"no temperature found for {what}")
     for _ in range(100):
-        if abs(high - low) < 1e-10 or above == below:
+        if abs(high - low) < precision or above == below:
             break
         middle = high - above * (high - low) / (above - below)
         value = gap(middle)
@@ -89,13 +89,15 @@ def _rising_root(gap: Callable[[float], float], guess: float, what: str) -> floa
         else:
             below *= 0.5
         moved, high, above = abs(middle - high), middle, value
-        if value == 0.0 or moved < 1e-10:
+        if value == 0.0 or moved < precision:
             break
     return high
 
 
-def flash(mixture: Mixture, name: str, flows: Floats, temperature: float, pressure: float) -> Stream:
-    """Both phases at equilibrium, or the gas alone where no liquid forms.
+def flash(
+    mixture: Mixture, name: str, flows: Floats, temperature: float, pressure: float, settled: float = SETTLED
+) -> Stream:
+    """Both phases at equilibrium, or the gas alone where no liquid forms; `settled` is the last change of ln K.
 
     Successive substitution of fugacity coefficients by the equation of state with the Rachford-Rice equation, started
     from the liquid nearest to forming.
@@ -115,7 +117,7 @@ def flash(mixture: Mixture, name: str, flows: Floats, temperature: float, pressu
         fresh = fresh - _ln_phi(mixture, y, temperature, pressure, liquid=False)
         moved = float(np.max(np.abs(fresh - ln_k)))
         ln_k = fresh
-        if moved < SETTLED:
+        if moved < settled:
             break
     if not 0.0 < share < 1.0:
         return gas(name, flows, temperature, pressure)
@@ -142,7 +144,7 @@ def incipient_liquid(mixture: Mixture, z: Floats, temperature: float, pressure: 
         raw = np.exp(potential - _ln_phi(mixture, x, temperature, pressure, liquid=True))
         done = float(np.max(np.abs(raw / raw.sum() - x / x.sum())))
         x = raw
-        if done < 1e-9:
+        if done < 1e-6:
             break
     total = float(x.sum())
     fractions = x / total
@@ -152,7 +154,7 @@ def incipient_liquid(mixture: Mixture, z: Floats, temperature: float, pressure: 
 
 
 def dew_temperature(mixture: Mixture, z: Floats, pressure: float, guess: float = 320.0) -> float:
-    """Temperature at which a gas of these fractions forms its first liquid, K, to 0.01 K.
+    """Temperature at which a gas of these fractions forms its first liquid, K, to 0.05 K.
 
     Raises:
         StateProblem: between 200 and 500 K no liquid forms.
@@ -160,7 +162,7 @@ def dew_temperature(mixture: Mixture, z: Floats, pressure: float, guess: float =
     low, high = 200.0, 500.0
     if incipient_liquid(mixture, z, low, pressure)[1] <= 0.0:
         raise StateProblem(f"no liquid forms at {pressure / 1e5:.4g} bar above {low:.0f} K")
-    while high - low > 0.01:
+    while high - low > 0.05:
         middle = guess if low < guess < high else 0.5 * (low + high)
         guess = -1.0
         if incipient_liquid(mixture, z, middle, pressure)[1] > 0.0:
@@ -191,12 +193,19 @@ def _rachford_rice(z: Floats, k: Floats, guess: float) -> float:
 
 
 def flash_at_enthalpy(
-    mixture: Mixture, name: str, flows: Floats, pressure: float, enthalpy: float, guess: float
+    mixture: Mixture,
+    name: str,
+    flows: Floats,
+    pressure: float,
+    enthalpy: float,
+    guess: float,
+    settled: float = SETTLED,
 ) -> Stream:
     """Both phases at a pressure and an enthalpy flow (W); the temperature is found."""
 
     def gap(temperature: float) -> float:
-        return flash(mixture, name, flows, temperature, pressure).enthalpy(mixture) - enthalpy
+        return flash(mixture, name, flows, temperature, pressure, settled).enthalpy(mixture) - enthalpy
 
-    temperature = _rising_root(gap, guess, f"{name} of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar")
-    return flash(mixture, name, flows, temperature, pressure)
+    what = f"{name} of {enthalpy:.6g} W at {pressure / 1e5:.4g} bar"
+    temperature = _rising_root(gap, guess, what, max(100.0 * settled, 1e-10))
+    return flash(mixture, name, flows, temperature, pressure, settled)

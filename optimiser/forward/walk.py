@@ -21,6 +21,8 @@ from optimiser.inputs.case import BedStep, Case, CoolStep
 
 Floats = NDArray[np.float64]
 PI = 3.141592653589793
+SHARPER = 1e-3
+"""Flashes settle to this part of the tolerance of the beds."""
 
 
 @dataclass
@@ -42,6 +44,7 @@ class Walk:
         beds: profiles by name.
         quantities: by result path, SI.
         recycle: at loop pressure, as it comes back; `given` is the one that the pass began with.
+        settled: how far flashes settle, in ln K.
         exchangers: by path; `powers`, electric, by name, W; `water`, heat into cooling water, W.
         sunk: heat by sink of the reactor's coolers, W.
     """
@@ -55,6 +58,7 @@ class Walk:
     sunk: dict[str, float] = field(default_factory=dict)
     condenser_area: float = 0.0
     given: Stream | None = None
+    settled: float = 1e-12
 
     @property
     def recycle(self) -> Stream:
@@ -92,7 +96,7 @@ class Section:
             positions: where each bed's profile is wanted.
             tolerance: of the bed integration.
         """
-        walk = Walk(given=recycle)
+        walk = Walk(given=recycle, settled=SHARPER * tolerance)
         walk.quantities.update(setpoints)
         fresh = self._makeup(walk, makeup)
         cooled = self._compression(walk, fresh, setpoints)
@@ -127,7 +131,7 @@ class Section:
             The separator's vapour and liquid, and the hottest temperature of each bed, K.
         """
         pressure = setpoints["loop.pressure"] - self.case.loop.feed_pressure_drop.si
-        flows, walk = fresh + recycle, Walk()
+        flows, walk = fresh + recycle, Walk(settled=SHARPER * tolerance)
         for step in self.case.reactor:
             if isinstance(step, CoolStep):
                 pressure -= step.pressure_drop.si
@@ -138,7 +142,8 @@ class Section:
         pressure -= self.case.condensation.pressure_drop.si
         if pressure <= 0:
             raise StateProblem("the pressure drops of the section use up the loop pressure")
-        separator = flash(self.mixture, "separator", flows, self._separator_temperature(setpoints), pressure)
+        end = self._separator_temperature(setpoints)
+        separator = flash(self.mixture, "separator", flows, end, pressure, walk.settled)
         empty = np.zeros_like(flows)
         vapour = gas("vapour", separator.vapour, separator.temperature, pressure)
         liquid = Stream("liquid", empty, separator.liquid, separator.temperature, pressure)
@@ -223,7 +228,8 @@ class Section:
             following = steps[k + 1] if k + 1 < len(steps) else None
             last = not any(isinstance(s, BedStep) for s in steps[k:])
             closing = needed - sum(d for s, _, _, d in duties.values() if s.sink == "feed")
-            out = self._cooled(step, following, stream, setpoints, closing, may_condense=last and step.sink != "steam")
+            condensing = last and step.sink != "steam"
+            out = self._cooled(walk, step, following, stream, setpoints, closing, may_condense=condensing)
             duty = stream.enthalpy(self.mixture) - out.enthalpy(self.mixture)
             duties[step.name] = (step, stream, walk.put(out), duty)
             walk.quantities[f"reactor.{step.name}.outlet_temperature"] = out.temperature
@@ -233,6 +239,7 @@ class Section:
 
     def _cooled(
         self,
+        walk: Walk,
         step: CoolStep,
         following: Any,
         hot: Stream,
@@ -250,9 +257,9 @@ class Section:
         else:
             target = hot.enthalpy(self.mixture) - closing
             guess = max(hot.temperature - 150.0, 300.0)
-            return flash_at_enthalpy(self.mixture, name, hot.flows, pressure, target, guess)
+            return flash_at_enthalpy(self.mixture, name, hot.flows, pressure, target, guess, walk.settled)
         if may_condense:
-            return flash(self.mixture, name, hot.flows, temperature, pressure)
+            return flash(self.mixture, name, hot.flows, temperature, pressure, walk.settled)
         return gas(name, hot.flows, temperature, pressure)
 
     def _bed(
@@ -344,11 +351,11 @@ class Section:
         last = plant.chiller or plant.water_cooler
         final = "chiller" if last is plant.chiller else "water_cooler"
         end = setpoints[f"condensation.{final}.outlet_temperature"]
-        separator = flash(mixture, f"condensation.{final}.out", flows, end, pressure)
+        separator = flash(mixture, f"condensation.{final}.out", flows, end, pressure, walk.settled)
         water = self.case.utilities
         if plant.water_cooler is not None:
             temperature = setpoints["condensation.water_cooler.outlet_temperature"]
-            out = flash(mixture, "condensation.water_cooler.out", flows, temperature, pressure)
+            out = flash(mixture, "condensation.water_cooler.out", flows, temperature, pressure, walk.settled)
             ends = (hot.temperature - water.cooling_water_return.si, temperature - water.cooling_water_supply.si)
             duty = self._cool(walk, "water_cooler", hot, out, ends, "water_cooled")
             walk.water += duty
@@ -362,7 +369,13 @@ class Section:
             duty = back.enthalpy(mixture) - cold
             target = hot.enthalpy(mixture) - duty
             out = flash_at_enthalpy(
-                mixture, "condensation.cold_exchanger.out", flows, pressure, target, hot.temperature - 5.0
+                mixture,
+                "condensation.cold_exchanger.out",
+                flows,
+                pressure,
+                target,
+                hot.temperature - 5.0,
+                walk.settled,
             )
             ends = (hot.temperature - warm, out.temperature - separator.temperature)
             self._cool(walk, "cold_exchanger", hot, out, ends, "exchanger")
