@@ -9,7 +9,7 @@ from typing import Any
 from optimiser.chemistry.eos import Cubic, CubicMix, IdealMix
 from optimiser.chemistry.maths import R, exp, log
 from optimiser.chemistry.species import Species
-from optimiser.chemistry.thermo import entropy_sum, enthalpy_sum
+from optimiser.chemistry.thermo import enthalpy_sum, entropy_sum
 
 STANDARD_PRESSURE = 1e5
 
@@ -141,7 +141,9 @@ class Phase:
         """Fugacities, bar; safe where a species is absent."""
         bar = self.pressure / STANDARD_PRESSURE
         ideal = isinstance(self.mix, IdealMix)
-        return [y * bar if ideal else y * bar * exp(p) for y, p in zip(self.fractions, self.ln_phi, strict=True)]
+        return [
+            y * bar if ideal else y * bar * exp(p) for y, p in zip(self.fractions, self.ln_phi, strict=True)
+        ]
 
     @cached_property
     def volume(self) -> Any:

@@ -44,7 +44,12 @@ def audit_point(workshop: Workshop, values: dict[str, float], units: Units) -> d
     try:
         lines, _ = audit(workshop.forward, point_of(workshop, values))
     except (StateProblem, ArithmeticError, ValueError) as problem:
-        return {"passed": False, "worst": None, "lines": [], "reason": f"the section cannot be rebuilt: {problem}"}
+        return {
+            "passed": False,
+            "worst": None,
+            "lines": [],
+            "reason": f"the section cannot be rebuilt: {problem}",
+        }
     rows = [_row(line, units) for line in lines]
     worst = max(lines, key=lambda line: line.difference / line.allowed)
     return {"passed": all(line.passed for line in lines), "worst": _row(worst, units), "lines": rows}

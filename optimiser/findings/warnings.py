@@ -1,4 +1,4 @@
-"""What a careful colleague would add to a result: ranges left, factors that know no catalyst, credits that pay too well."""
+"""What a careful colleague would add to a result: ranges left, factors that know no catalyst."""
 
 from __future__ import annotations
 

@@ -87,7 +87,9 @@ def add_approaches(section: Section, walk: Walk) -> None:
     for name, profile in walk.beds.items():
         inlet, outlet = walk.streams[f"reactor.{name}.in"], walk.streams[f"reactor.{name}.out"]
         state = (outlet.temperature, outlet.pressure)
-        fraction = approach_fraction(section.chemistry, inlet.vapour.tolist(), profile.extents[-1].tolist(), *state)
+        fraction = approach_fraction(
+            section.chemistry, inlet.vapour.tolist(), profile.extents[-1].tolist(), *state
+        )
         phase = section.mixture.gas(*state, outlet.vapour.tolist())
         kelvin = approach_temperature(section.chemistry, phase, *state)
         walk.quantities[f"reactor.{name}.approach_fraction"] = fraction[0]
@@ -101,7 +103,11 @@ def _closure(section: Section, walk: Walk, point: Point) -> list[Line]:
     for k, name in enumerate(section.mixture.names):
         given, back = float(point.recycle.vapour[k]), float(walk.recycle.vapour[k])
         base = max(given, LEAST_SHARE * total)
-        lines.append(Line(f"closure of the loop, {name}", given, back, abs(back - given) / base, RELATIVE, "molar_flow"))
+        lines.append(
+            Line(
+                f"closure of the loop, {name}", given, back, abs(back - given) / base, RELATIVE, "molar_flow"
+            )
+        )
     return lines
 
 
@@ -113,7 +119,9 @@ def _balances(section: Section, point: Point) -> list[Line]:
     lines = []
     for element in sorted({e for s in species for e in s.elements}):
         atoms = np.array([s.elements.get(element, 0.0) for s in species])
-        lines.append(_relative(f"balance of {element}", float(atoms @ fed), float(atoms @ out), BALANCE, "molar_flow"))
+        lines.append(
+            _relative(f"balance of {element}", float(atoms @ fed), float(atoms @ out), BALANCE, "molar_flow")
+        )
     mass = np.array(section.mixture.molar_mass)
     lines.append(_relative("balance of mass", float(mass @ fed), float(mass @ out), BALANCE, "mass_flow"))
     return lines
@@ -159,7 +167,9 @@ def _streams(walk: Walk, point: Point) -> list[Line]:
             continue
         gap = abs(reported.temperature - found.temperature)
         lines.append(
-            Line(f"temperature of {name}", reported.temperature, found.temperature, gap, KELVIN, "temperature")
+            Line(
+                f"temperature of {name}", reported.temperature, found.temperature, gap, KELVIN, "temperature"
+            )
         )
         total = float(found.flows.sum())
         base = np.maximum(np.abs(found.flows), LEAST_SHARE * total)
@@ -167,7 +177,12 @@ def _streams(walk: Walk, point: Point) -> list[Line]:
         gap = float(abs(reported.flows[worst] - found.flows[worst]) / base[worst])
         lines.append(
             Line(
-                f"flows of {name}", float(reported.flows[worst]), float(found.flows[worst]), gap, RELATIVE, "molar_flow"
+                f"flows of {name}",
+                float(reported.flows[worst]),
+                float(found.flows[worst]),
+                gap,
+                RELATIVE,
+                "molar_flow",
             )
         )
     return lines
@@ -185,7 +200,9 @@ def _quantities(walk: Walk, point: Point) -> list[Line]:
         elif dimension == "fraction":
             lines.append(Line(path, value, found, abs(value - found), FRACTION, dimension))
         else:
-            lines.append(_relative(path, value, found, RELATIVE, dimension, point.quantities.get("costs.total")))
+            lines.append(
+                _relative(path, value, found, RELATIVE, dimension, point.quantities.get("costs.total"))
+            )
     return lines
 
 

@@ -90,7 +90,11 @@ class BedIntegrator:
         by_extent, by_pressure = ca.gradient(phase.enthalpy, extents), ca.gradient(phase.enthalpy, square)
         capacity = ca.gradient(phase.enthalpy, temperature)
         warming = -(ca.dot(by_extent, rates) + by_pressure * fall) / capacity
-        return {"x": ca.vertcat(extents, temperature, square), "p": p, "ode": ca.vertcat(rates, warming, fall)}
+        return {
+            "x": ca.vertcat(extents, temperature, square),
+            "p": p,
+            "ode": ca.vertcat(rates, warming, fall),
+        }
 
     def _integrator(self, positions: tuple[float, ...], tolerance: float) -> Any:
         key = (positions, tolerance)
@@ -138,7 +142,12 @@ class BedIntegrator:
         extents = out[:-2].T * scale
         nu = np.array([r.nu for r in self.chemistry.reactions])
         return BedProfile(
-            np.array(positions), extents, out[-2], np.sqrt(out[-1]) * UNIT, inlet + extents[-1] @ nu, volume / area
+            np.array(positions),
+            extents,
+            out[-2],
+            np.sqrt(out[-1]) * UNIT,
+            inlet + extents[-1] @ nu,
+            volume / area,
         )
 
 
@@ -174,7 +183,11 @@ def factor_bed(
         found = gas_temperature(mixture, flows, out_p, heat, out_t)
         phase = mixture.gas(found, out_p, flows.tolist())
         gradient = ergun_gradient(
-            flux, float(phase.density), float(catalyst.viscosity(found)), catalyst.pellet_diameter, catalyst.void
+            flux,
+            float(phase.density),
+            float(catalyst.viscosity(found)),
+            catalyst.pellet_diameter,
+            catalyst.void,
         )
         square = pressure**2 - 2.0 * out_p * gradient * volume / area
         if square <= 0:
@@ -183,9 +196,13 @@ def factor_bed(
         out_t, out_p = found, float(np.sqrt(square))
         if moved < 1e-10:
             break
-    return BedProfile(np.array([1.0]), extents[None, :], np.array([out_t]), np.array([out_p]), flows, volume / area)
+    return BedProfile(
+        np.array([1.0]), extents[None, :], np.array([out_t]), np.array([out_p]), flows, volume / area
+    )
 
 
-def _short_of(chemistry: Chemistry, inlet: Floats, temperature: float, pressure: float, shift: float) -> Floats:
+def _short_of(
+    chemistry: Chemistry, inlet: Floats, temperature: float, pressure: float, shift: float
+) -> Floats:
     """Extents at which Q equals K at a shifted temperature, fugacities at the real one."""
     return equilibrium_extents(chemistry, inlet.tolist(), temperature, pressure, shift=shift)

@@ -75,7 +75,9 @@ def converge(
             flows = 0.6 * flows  # Too much gas for the beds: the next round tries less.
             continue
         cooler = _cooler_inlets(section, setpoints, hottest)
-        gap = _gap(section, fresh, flows, vapour.vapour * (1.0 - purge), vapour.vapour * purge + liquid.liquid)
+        gap = _gap(
+            section, fresh, flows, vapour.vapour * (1.0 - purge), vapour.vapour * purge + liquid.liquid
+        )
         made = _product(section, liquid.liquid)
         scale = min(max(wanted / max(made, 1e-9), 0.8), 1.25) if wanted is not None else 1.0
         if float(np.max(np.abs(gap))) < closure and abs(scale - 1.0) < closure and cooler == setpoints:
@@ -113,7 +115,9 @@ def _gap(section: Section, fresh: Floats, given: Floats, back: Floats, out: Floa
     return np.asarray(gap)
 
 
-def _cooler_inlets(section: Section, setpoints: dict[str, float], hottest: Mapping[str, float]) -> dict[str, float]:
+def _cooler_inlets(
+    section: Section, setpoints: dict[str, float], hottest: Mapping[str, float]
+) -> dict[str, float]:
     """Setpoints with the inlet of each bed that passes its own limit lowered, as far as its range goes."""
     limits, settings = section.case.limits, section.case.settings()
     changed = dict(setpoints)

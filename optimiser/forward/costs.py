@@ -25,12 +25,14 @@ def add_costs(section: Section, walk: Walk) -> None:
     quantities["capital.total"] = total = sum(capital.values())
     economics = section.case.economics
     costs = _operating(section, walk)
-    costs["capital_recovery"] = total * float(capital_recovery(economics.interest.si, economics.life.si / YEAR))
+    costs["capital_recovery"] = total * float(
+        capital_recovery(economics.interest.si, economics.life.si / YEAR)
+    )
     costs["maintenance"] = total * economics.maintenance.si
     costs["fixed"] = economics.fixed_cost.si
-    credits = _credits(section, walk)
-    quantities |= {f"costs.{name}": value for name, value in (costs | credits).items()}
-    quantities["costs.total"] = sum(costs.values()) - sum(credits.values())
+    earned = _credits(section, walk)
+    quantities |= {f"costs.{name}": value for name, value in (costs | earned).items()}
+    quantities["costs.total"] = sum(costs.values()) - sum(earned.values())
     made = quantities["product.rate"] * economics.hours_per_year.si
     if made > 0:
         quantities["product.cost"] = quantities["costs.total"] / made
@@ -42,7 +44,9 @@ def _operating(section: Section, walk: Walk) -> dict[str, float]:
     feed = 0.0
     for name, stream in case.feed.streams.items():
         fractions = [stream.composition.get(s, 0.0) for s in mixture.names]
-        feed += walk.quantities[f"feed.streams.{name}.flow"] * stream.price_per_mole(mixture.species, fractions)
+        feed += walk.quantities[f"feed.streams.{name}.flow"] * stream.price_per_mole(
+            mixture.species, fractions
+        )
     power = sum(walk.powers.values())
     rise = case.utilities.cooling_water_return.si - case.utilities.cooling_water_supply.si
     price = prices.catalyst.si if prices.catalyst is not None else catalyst.price
@@ -63,12 +67,14 @@ def _operating(section: Section, walk: Walk) -> dict[str, float]:
 
 def _credits(section: Section, walk: Walk) -> dict[str, float]:
     prices, year = section.case.prices, section.case.economics.hours_per_year.si
-    credits = {"fuel_credit": walk.quantities["purge.heating_value"] * prices.fuel.si * year}
+    earned = {"fuel_credit": walk.quantities["purge.heating_value"] * prices.fuel.si * year}
     if "steam" in walk.sunk:
-        credits["steam_credit"] = walk.sunk["steam"] * prices.steam.si * year
+        earned["steam_credit"] = walk.sunk["steam"] * prices.steam.si * year
     if "boiler_feed_water" in walk.sunk:
-        credits["water_heat_credit"] = walk.sunk["boiler_feed_water"] * prices.boiler_feed_water_heat.si * year
-    return credits
+        earned["water_heat_credit"] = (
+            walk.sunk["boiler_feed_water"] * prices.boiler_feed_water_heat.si * year
+        )
+    return earned
 
 
 def _capital(section: Section, walk: Walk) -> dict[str, float]:
@@ -77,7 +83,7 @@ def _capital(section: Section, walk: Walk) -> dict[str, float]:
     shop = _Shop(section)
     capital: dict[str, float] = {}
     for name, (cost, size) in _assets(section, walk, shop).items():
-        quote = economics.quoted.get(name)
+        quote = next((q for asset, q in economics.quoted.items() if asset == name), None)
         if quote is not None:
             index = equipment.cost_index(quote.year)
             cost = float(shop.basis.quote(quote.cost.si, size, quote.size.si, quote.exponent.si, index))
@@ -102,7 +108,10 @@ def _assets(section: Section, walk: Walk, shop: _Shop) -> dict[str, tuple[float,
     assets = {
         "compressors": (sum(shop.machine(p) for p in stages), sum(stages)),
         "circulator": (shop.machine(walk.powers["circulator"]), walk.powers["circulator"]),
-        "exchangers": (sum(shop.exchanger(e.use, e.area, e.pressure) for e in walk.exchangers.values()), areas),
+        "exchangers": (
+            sum(shop.exchanger(e.use, e.area, e.pressure) for e in walk.exchangers.values()),
+            areas,
+        ),
         "converter": (converter, q["reactor.catalyst_volume"]),
         "separator": (separator, q.get("condensation.separator.volume", 0.0)),
     }

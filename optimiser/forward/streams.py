@@ -126,12 +126,18 @@ def flash(
     return Stream(name, vapour, flows - vapour, temperature, pressure)
 
 
-def _ln_phi(mixture: Mixture, fractions: Floats, temperature: float, pressure: float, *, liquid: bool) -> Floats:
+def _ln_phi(
+    mixture: Mixture, fractions: Floats, temperature: float, pressure: float, *, liquid: bool
+) -> Floats:
     phase = mixture.liquid if liquid else mixture.condensing
-    return np.array([float(v) for v in phase(temperature, pressure, (fractions / fractions.sum()).tolist()).ln_phi])
+    return np.array(
+        [float(v) for v in phase(temperature, pressure, (fractions / fractions.sum()).tolist()).ln_phi]
+    )
 
 
-def incipient_liquid(mixture: Mixture, z: Floats, temperature: float, pressure: float) -> tuple[Floats, float]:
+def incipient_liquid(
+    mixture: Mixture, z: Floats, temperature: float, pressure: float
+) -> tuple[Floats, float]:
     """The liquid nearest to forming from a gas: its composition, and ln of the sum of its unnormalised fractions.
 
     The logarithm is positive where the gas is not stable, so liquid forms.
@@ -149,7 +155,10 @@ def incipient_liquid(mixture: Mixture, z: Floats, temperature: float, pressure: 
     total = float(x.sum())
     fractions = x / total
     if float(np.max(np.abs(fractions - z))) < 1e-6:
-        return fractions, -1.0  # The trial has become the gas itself: above its critical point there is one phase.
+        return (
+            fractions,
+            -1.0,
+        )  # The trial has become the gas itself: above its critical point there is one phase.
     return fractions, float(np.log(total))
 
 

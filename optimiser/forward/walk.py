@@ -166,7 +166,9 @@ class Section:
             walk.quantities[f"feed.streams.{name}.flow"] = makeup[name]
         walk.quantities["feed.flow"] = float(total.sum())
         guess = next(iter(streams.values())).temperature.si
-        temperature = guess if len(streams) == 1 else gas_temperature(self.mixture, total, pressure, enthalpy, guess)
+        temperature = (
+            guess if len(streams) == 1 else gas_temperature(self.mixture, total, pressure, enthalpy, guess)
+        )
         return walk.put(gas("makeup", total, temperature, pressure))
 
     def _compression(self, walk: Walk, inlet: Stream, setpoints: Mapping[str, float]) -> Stream:
@@ -178,7 +180,9 @@ class Section:
             path = f"compression.{stage.name}"
             delivery = setpoints.get(f"{path}.discharge_pressure", setpoints["loop.pressure"] + drop)
             walk.put(gas(f"{path}.in", stream.vapour, stream.temperature, stream.pressure))
-            out, work = compress(self.mixture, stream, delivery, plant.isentropic_efficiency.si, f"{path}.out")
+            out, work = compress(
+                self.mixture, stream, delivery, plant.isentropic_efficiency.si, f"{path}.out"
+            )
             walk.put(out)
             cooled = walk.put(gas(f"{path}.cooled", out.vapour, cold, delivery - drop))
             duty = out.enthalpy(self.mixture) - cooled.enthalpy(self.mixture)
@@ -356,7 +360,10 @@ class Section:
         if plant.water_cooler is not None:
             temperature = setpoints["condensation.water_cooler.outlet_temperature"]
             out = flash(mixture, "condensation.water_cooler.out", flows, temperature, pressure, walk.settled)
-            ends = (hot.temperature - water.cooling_water_return.si, temperature - water.cooling_water_supply.si)
+            ends = (
+                hot.temperature - water.cooling_water_return.si,
+                temperature - water.cooling_water_supply.si,
+            )
             duty = self._cool(walk, "water_cooler", hot, out, ends, "water_cooled")
             walk.water += duty
             hot = out
@@ -405,7 +412,9 @@ class Section:
         approach = plant.evaporator_approach.si
         evaporating = separator.temperature - approach
         condensing = water.cooling_water_return.si + plant.condenser_approach.si
-        duty = self._cool(walk, "chiller", hot, separator, (hot.temperature - evaporating, approach), "chiller")
+        duty = self._cool(
+            walk, "chiller", hot, separator, (hot.temperature - evaporating, approach), "chiller"
+        )
         work = float(refrigeration_work(duty, evaporating, condensing, plant.second_law_efficiency.si))
         power = work / self.case.compression.driver_efficiency.si
         rise = water.cooling_water_return.si - water.cooling_water_supply.si
@@ -425,7 +434,11 @@ class Section:
         walk.put(Stream("product", np.zeros_like(separator.liquid), separator.liquid, temperature, pressure))
         loop = setpoints["loop.pressure"]
         out, work = compress(
-            self.mixture, walk.streams["circulator.in"], loop, self.case.loop.circulator_efficiency.si, "circulator.out"
+            self.mixture,
+            walk.streams["circulator.in"],
+            loop,
+            self.case.loop.circulator_efficiency.si,
+            "circulator.out",
         )
         walk.put(out)
         walk.powers["circulator"] = work / self.case.compression.driver_efficiency.si
@@ -437,7 +450,10 @@ class Section:
         names, mixture = self.mixture.names, self.mixture
         beds = [s.name for s in self.case.reactor if isinstance(s, BedStep)]
         last = walk.streams[f"reactor.{beds[-1]}.out"]
-        key, wanted = names.index(self.chemistry.key_reactant), [names.index(p) for p in self.chemistry.products]
+        key, wanted = (
+            names.index(self.chemistry.key_reactant),
+            [names.index(p) for p in self.chemistry.products],
+        )
         product, purge = walk.streams["product"], walk.streams["purge"]
         separator = walk.streams["separator.vapour"]
         mass = np.array(mixture.molar_mass)
@@ -450,13 +466,17 @@ class Section:
             "reactor.pressure_drop": walk.streams[f"reactor.{beds[0]}.in"].pressure
             - walk.streams["condensation.in"].pressure,
             "condensation.separator.pressure": separator.pressure,
-            "condensation.separator.vapour_fraction": float(separator.vapour.sum() / (separator.vapour.sum() + total)),
+            "condensation.separator.vapour_fraction": float(
+                separator.vapour.sum() / (separator.vapour.sum() + total)
+            ),
             "product.rate": made,
             "product.flow": total,
             "product.purity": float(product.liquid[wanted].sum() / total) if total > 0 else 0.0,
             "product.yield": made / float(fresh.vapour @ mass),
             "purge.flow": float(purge.vapour.sum()),
-            "purge.heating_value": float(sum(n * s.lhv for n, s in zip(purge.vapour, mixture.species, strict=True))),
+            "purge.heating_value": float(
+                sum(n * s.lhv for n, s in zip(purge.vapour, mixture.species, strict=True))
+            ),
         }
         idle = [names.index(i) for i in self.chemistry.inerts]
         if idle:

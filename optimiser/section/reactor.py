@@ -142,9 +142,7 @@ def _cold_sides(
         temperature = warm
 
 
-def _feed_after(
-    frame: Frame, record: _Cooled, enthalpy: Any, heated: Gas, *, last: bool
-) -> tuple[Any, Any]:
+def _feed_after(frame: Frame, record: _Cooled, enthalpy: Any, heated: Gas, *, last: bool) -> tuple[Any, Any]:
     """Temperature and enthalpy of the feed after one exchanger; after the last it is the first bed's inlet."""
     block = frame.block(f"feed_after_{record.step.name}")
     if last:

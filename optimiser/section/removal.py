@@ -1,9 +1,9 @@
 """Condensation: the flash at every point that may be two-phase, by one equation of state for both phases.
 
 A flash may end with one phase. Gas and liquid are brought to equilibrium at `dew_temperature`, which lies `superheat`
-below the real one: where there is liquid the superheat is zero and the two are the same; where there is none, the liquid
-is the first drop that the gas would form on cooling, a real liquid and never the gas over again. Either the liquid share
-or the superheat is zero; the two are joined by the smooth Fischer-Burmeister function, which is off by at most the
+below the real one: where there is liquid the superheat is zero and the two are the same; where there is none, the
+liquid is the first drop that the gas would form on cooling, a real liquid and never the gas over again. Either the
+liquid share or the superheat is zero; the two are joined by the smooth Fischer-Burmeister function, which is off by at most the
 square root of `SMOOTHING` right at the dew point and by far less away from it.
 """
 
@@ -48,10 +48,11 @@ def build_flash(
 
     `name` is the stream that both phases form.
     """
-    mixture, names = frame.mixture, frame.mixture.names
+    names = frame.mixture.names
     vapour = [frame.variable(block, f"vapour_{s}", "flow", 1e-9 * frame.flow) for s in names]
     fractions = [
-        frame.variable(block, f"liquid_fraction_{s}", "trace", _least(frame, s), 1.1, start=0.5) for s in names
+        frame.variable(block, f"liquid_fraction_{s}", "trace", _least(frame, s), 1.1, start=0.5)
+        for s in names
     ]
     liquid_flow = frame.variable(block, "liquid_flow", "flow", 0.0)
     superheat = frame.variable(block, "superheat", "temperature", 0.0, 900.0, start=1.0)
@@ -72,7 +73,17 @@ def build_flash(
     enthalpy = frame.define(block, "enthalpy", "heat", gas.enthalpy + liquid_flow * liquid.enthalpy)
     flows = [liquid_flow * x for x in fractions]
     flash = Flash(
-        vapour, flows, liquid_flow, temperature, pressure, enthalpy, gas, liquid, fractions, superheat, liquid_root
+        vapour,
+        flows,
+        liquid_flow,
+        temperature,
+        pressure,
+        enthalpy,
+        gas,
+        liquid,
+        fractions,
+        superheat,
+        liquid_root,
     )
     frame.flashes[name] = flash
     frame.stream(name, vapour, temperature, pressure, flows)
@@ -87,7 +98,7 @@ def _phase(
     rest: tuple[Any, Sequence[Any], bool],
     roots: tuple[float, float, float],
 ) -> tuple[Phase, Any]:
-    """A phase with its compressibility as a variable; `rest` is pressure, flows and whether by the liquid's equation."""
+    """A phase with its compressibility as a variable; `rest`: pressure, flows, whether by the liquid's equation."""
     pressure, flows, liquid = rest
     low, high, start = roots
     root = frame.variable(block, f"{name}_compressibility", "ratio", low, high, start=start)

@@ -1,4 +1,4 @@
-"""The optimum of the shipped case: balances, limits, worth against solved differences, and better than its neighbours."""
+"""The optimum of the shipped case: balances, limits, worth against differences, and better than its neighbours."""
 
 from __future__ import annotations
 
