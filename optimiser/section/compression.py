@@ -18,6 +18,7 @@ class Compressed:
 
     Attributes:
         molar_enthalpy: J/mol.
+        names: of the stages, as paths.
         powers: electric power of each stage, W.
         duties: heat into cooling water of each intercooler, W.
         areas: area of each intercooler, m2; `pressures` their design basis, Pa.
@@ -25,6 +26,7 @@ class Compressed:
 
     molar_enthalpy: Any
     temperature: float
+    names: list[str]
     powers: list[Any]
     duties: list[Any]
     areas: list[Any]
@@ -45,7 +47,7 @@ def build_compression(frame: Frame, makeup: MakeUp, loop_pressure: Any) -> Compr
     plant = frame.case.compression
     cooled = plant.intercooler_temperature.si
     drop = plant.intercooler_pressure_drop.si
-    result = Compressed(None, cooled, [], [], [], [])
+    result = Compressed(None, cooled, [], [], [], [], [])
     entry = frame.block("compression_entry")
     temperature: Any = makeup.temperature
     if temperature is None:
@@ -126,6 +128,7 @@ def _stage(
     coefficient = exchanger_coefficient(plant.coefficient.si, discharge)
     area = frame.define(block, "intercooler_area", "area", duty / (coefficient * mean), low=0.0)
     frame.report(f"{name}.intercooler_area", "area", area)
+    result.names.append(name)
     result.powers.append(power)
     result.duties.append(duty)
     result.areas.append(area)

@@ -173,7 +173,10 @@ def _assets(frame: Frame, inventory: Inventory, basis: CostBasis) -> dict[str, _
     machine = _Buyer(frame, basis)
     assets = {
         "compressors": _Asset(
-            [machine.compressor(f"stage_{k}", p, driver) for k, p in enumerate(compressed.powers)],
+            [
+                machine.compressor(name, power, driver)
+                for name, power in zip(compressed.names, compressed.powers, strict=True)
+            ],
             sum(compressed.powers),
         ),
         "circulator": _Asset(
@@ -191,7 +194,7 @@ def _assets(frame: Frame, inventory: Inventory, basis: CostBasis) -> dict[str, _
     }
     if frame.case.condensation.chiller is not None:
         cost = machine.compressor("refrigeration", train.power, driver)
-        condenser = machine.exchanger("refrigeration_condenser", "water_cooled", train.condenser_area, None)
+        condenser = machine.exchanger("refrigeration condenser", "water_cooled", train.condenser_area, None)
         assets["refrigeration"] = _Asset([cost, condenser], train.power)
     return assets
 
@@ -204,8 +207,8 @@ def _exchangers(machine: _Buyer, inventory: Inventory) -> _Asset:
         bought.append(machine.exchanger(exchanger.path, exchanger.use, exchanger.area, exchanger.pressure))
         areas.append(exchanger.area)
     compressed = inventory.compressed
-    for k, (area, pressure) in enumerate(zip(compressed.areas, compressed.pressures, strict=True)):
-        bought.append(machine.exchanger(f"intercooler_{k}", "water_cooled", area, pressure))
+    for name, area, pressure in zip(compressed.names, compressed.areas, compressed.pressures, strict=True):
+        bought.append(machine.exchanger(f"{name} intercooler", "water_cooled", area, pressure))
         areas.append(area)
     return _Asset(bought, sum(areas))
 
@@ -241,7 +244,7 @@ class _Buyer:
     def compressor(self, name: str, power: Any, driver_efficiency: float) -> Any:
         """Machine by its shaft power and drive by its electric power."""
         return self._buy(name, "compressor", power * driver_efficiency) + self._buy(
-            f"{name}_drive", "drive", power
+            f"{name} drive", "drive", power
         )
 
     def exchanger(self, path: str, use: str, area: Any, pressure: Any) -> Any:

@@ -6,6 +6,7 @@ solver sees numbers of order one.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 from typing import Any
@@ -120,7 +121,7 @@ class Frame:
     def block(self, name: str) -> Block:
         """A new block named by path; dots become underscores in the Pyomo name."""
         block = Block(concrete=True)
-        self.model.add_component(name.replace(".", "_").replace("-", "_"), block)
+        self.model.add_component(re.sub(r"[.\- ]", "_", name), block)
         return block
 
     def variable(
