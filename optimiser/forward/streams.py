@@ -194,10 +194,10 @@ def _rachford_rice(z: Floats, k: Floats, guess: float) -> float:
         else:
             high = share
         step = -value / slope
+        if abs(step) < 1e-14 or high - low < 1e-15:
+            break  # Before the next trial: a step too small to move would be taken for one out of bounds.
         trial = share + step
         share = trial if low < trial < high else 0.5 * (low + high)
-        if abs(step) < 1e-14 or high - low < 1e-15:
-            break
     return share
 
 
