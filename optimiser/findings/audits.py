@@ -63,7 +63,7 @@ def _row(line: Line, units: Units) -> dict[str, Any]:
         "model": units.plain(line.dimension, line.model)["value"],
         "audit": units.plain(line.dimension, line.audit)["value"],
         "quantity_unit": units.plain(line.dimension, line.audit)["unit"],
-        "difference": line.difference,
+        "difference": float(line.difference),
         "allowed": line.allowed,
         "unit": "K" if kelvin else "-",
         "passed": line.passed,

@@ -40,7 +40,7 @@ class Line:
     @property
     def passed(self) -> bool:
         """Whether the difference is allowed; a difference that is no number is not."""
-        return self.difference <= self.allowed
+        return bool(self.difference <= self.allowed)
 
 
 @dataclass

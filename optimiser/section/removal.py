@@ -59,7 +59,7 @@ def build_flash(
     for species, v, x, n in zip(names, vapour, fractions, total, strict=True):
         frame.equation(block, f"balance_{species}", v + liquid_flow * x - n == 0, frame.flow)
     frame.equation(block, "liquid_sum", sum(fractions) - 1.0 == 0)
-    dew = frame.define(block, "dew_temperature", "temperature", temperature - superheat, 150.0, 1000.0)
+    dew = frame.define(block, "dew_temperature", "temperature", temperature - superheat, 150.0, 1000.0, 300.0)
     # Both phases of the equilibrium by one equation of state, also where the gas is otherwise taken as ideal.
     saturated, _ = _phase(frame, block, "saturated", dew, (pressure, vapour, True), GAS_ROOTS)
     liquid, liquid_root = _phase(frame, block, "liquid", dew, (pressure, fractions, True), LIQUID_ROOTS)

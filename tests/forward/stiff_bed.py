@@ -1,9 +1,9 @@
 """An adiabatic bed of iron catalyst in numpy and scipy alone, against which both bed calculations are held.
 
-Nothing of the package is imported. Constants come from the text of models/ammonia.yaml; formulas from Soave, Chem. Eng.
-Sci. 27 (1972) 1197 (equation of state, in its printed A and B form), McBride, Gordon & Reno, NASA TM-4513 (1993)
-(polynomials), Dyson & Simon, Ind. Eng. Chem. Fundam. 7 (1968) 605 (rate and effectiveness) and Ergun, Chem. Eng. Prog. 48
-(1952) 89. State: ammonia made and pressure; the temperature is solved from the enthalpy at every call.
+Nothing of the package is imported. Constants come from the text of models/ammonia.yaml; formulas from Soave, Chem.
+Eng. Sci. 27 (1972) 1197 (equation of state, in its printed A and B form), McBride, Gordon & Reno, NASA TM-4513 (1993)
+(polynomials), Dyson & Simon, Ind. Eng. Chem. Fundam. 7 (1968) 605 (rate and effectiveness) and Ergun, Chem. Eng. Prog.
+48 (1952) 89. State: ammonia made and pressure; the temperature is solved from the enthalpy at every call.
 """
 
 from __future__ import annotations
@@ -114,7 +114,8 @@ class StiffBed:
         """Effectiveness factor, linear between the published pressures."""
         half = 0.5 * n[self.names.index("NH3")]
         z = half / (n[self.names.index("N2")] + half)
-        sets = [b[0] + b[1] * T + b[2] * z + b[3] * T**2 + b[4] * z**2 + b[5] * T**3 + b[6] * z**3 for b in TABLE_I.values()]
+        terms = np.array([1.0, T, z, T**2, z**2, T**3, z**3])
+        sets = [np.dot(b, terms) for b in TABLE_I.values()]
         return self.cap(np.interp(P / ATM, list(TABLE_I), sets))
 
     def rate(self, T, P, n):
@@ -132,7 +133,8 @@ class StiffBed:
         mu = mu0 * (1.0 - e + e * T / t0)
         rho = n @ self.mass / n.sum() * P / (self.soave(T, P, n)[0] * R * T)
         v, solid = flux / rho, 1.0 - self.void
-        return 150 * mu * v * solid**2 / (self.void**3 * self.grain**2) + 1.75 * rho * v**2 * solid / (self.void**3 * self.grain)
+        laminar = 150.0 * mu * v * solid**2 / (self.void**3 * self.grain**2)
+        return laminar + 1.75 * rho * v**2 * solid / (self.void**3 * self.grain)
 
     def integrate(self, inlet, T, P, volume, diameter, activity, positions=(1.0,)) -> Track:
         """Along the volume by LSODA, rtol 1e-9."""
