@@ -57,7 +57,7 @@ def converge(
     *,
     positions: Mapping[str, Sequence[float]] | None = None,
     closure: float = 2e-2,
-    rounds: int = 12,
+    rounds: int = 10,
     tolerance: float = 1e-5,
 ) -> Walk:
     """A walk whose recycle closes within `closure` (relative, each species), or the last of `rounds` walks."""
