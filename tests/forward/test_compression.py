@@ -115,6 +115,6 @@ def test_work_rises_with_pressure_and_vanishes_without_it():
     works = [compress(mixture, start, p, 0.75, "out")[1] for p in np.array([25.0, 26.0, 40.0, 80.0]) * 1e5]
     assert abs(works[0]) < 1e-6
     assert works == sorted(works)
-    # For a small rise the work is that of a flow, volume times rise over efficiency, on the isentrope's mean temperature.
+    # For a small rise the work is volume times rise over efficiency, at the isentrope's mean temperature.
     volume = mixture.gas(308.15 * 1.02**0.28, 25.5e5, start.vapour.tolist()).volume
     assert works[1] == pytest.approx(volume * 1e5 / 0.75, rel=1e-3)
