@@ -3,8 +3,8 @@
 A flash may end with one phase. Gas and liquid are brought to equilibrium at `dew_temperature`, which lies `superheat`
 below the real one: where there is liquid the superheat is zero and the two are the same; where there is none, the
 liquid is the first drop that the gas would form on cooling, a real liquid and never the gas over again. Either the
-liquid share or the superheat is zero; the two are joined by the smooth Fischer-Burmeister function, which is off by at most the
-square root of `SMOOTHING` right at the dew point and by far less away from it.
+liquid share or the superheat is zero; the two are joined by the smooth Fischer-Burmeister function, which is off by at
+most the square root of `SMOOTHING` right at the dew point and by far less away from it.
 """
 
 from __future__ import annotations

@@ -58,7 +58,7 @@ def workshop():
 
 
 def test_our_path_against_casadi_alone(benchmark, workshop) -> None:
-    """Derivatives and solve at most 0.8 times casadi's own Ipopt on the same equations, iterations at most 1.8 times."""
+    """Derivatives and solve at most 0.8 times casadi's own Ipopt on the same equations, iterations 1.8 times."""
     import casadi as ca
 
     from optimiser.findings.setpoints import starting_setpoints
@@ -113,7 +113,7 @@ def test_against_a_stepwise_optimiser(workshop) -> None:
     free = [path for path, setting in settings.items() if not setting.held]
     point = starting_setpoints(workshop.case, 1, 0)[0]
     low, span = (np.array([f(settings[p]) for p in free]) for f in (lambda s: s.low, lambda s: s.high - s.low))
-    limits = {p: limit for p, limit in workshop.case.limits.items()}
+    limits = dict(workshop.case.limits)
     calls = 0
     begin = time.perf_counter()
 
