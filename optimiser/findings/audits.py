@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import Any
 
 import numpy as np
@@ -51,8 +52,18 @@ def audit_point(workshop: Workshop, values: dict[str, float], units: Units) -> d
             "reason": f"the section cannot be rebuilt: {problem}",
         }
     rows = [_row(line, units) for line in lines]
-    worst = max(lines, key=lambda line: line.difference / line.allowed)
+    worst = max(lines, key=_badness)
     return {"passed": all(line.passed for line in lines), "worst": _row(worst, units), "lines": rows}
+
+
+def _badness(line: Line) -> float:
+    """Difference over what is allowed; a difference that is no number is worse than any."""
+    share = line.difference / line.allowed
+    return share if math.isfinite(share) else math.inf
+
+
+def _finite(value: float) -> float | None:
+    return float(value) if math.isfinite(value) else None
 
 
 def _row(line: Line, units: Units) -> dict[str, Any]:
@@ -60,10 +71,10 @@ def _row(line: Line, units: Units) -> dict[str, Any]:
     kelvin = line.dimension in _KELVIN and line.allowed == KELVIN
     return {
         "what": line.what,
-        "model": units.plain(line.dimension, line.model)["value"],
-        "audit": units.plain(line.dimension, line.audit)["value"],
+        "model": _finite(units.plain(line.dimension, line.model)["value"]),
+        "audit": _finite(units.plain(line.dimension, line.audit)["value"]),
         "quantity_unit": units.plain(line.dimension, line.audit)["unit"],
-        "difference": float(line.difference),
+        "difference": _finite(line.difference),
         "allowed": line.allowed,
         "unit": "K" if kelvin else "-",
         "passed": line.passed,
