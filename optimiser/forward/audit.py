@@ -159,33 +159,31 @@ def _heat_of_reaction(section: Section, walk: Walk) -> float:
 
 
 def _streams(walk: Walk, point: Point) -> list[Line]:
-    """Temperature and each flow of every stream."""
+    """Temperature, pressure, each flow, and the share of vapour where there is liquid, of every stream."""
     lines = []
     for name, reported in point.streams.items():
         found = walk.streams.get(name)
         if found is None:
             continue
-        gap = abs(reported.temperature - found.temperature)
-        lines.append(
-            Line(
-                f"temperature of {name}", reported.temperature, found.temperature, gap, KELVIN, "temperature"
-            )
-        )
-        total = float(found.flows.sum())
-        base = np.maximum(np.abs(found.flows), LEAST_SHARE * total)
-        worst = int(np.argmax(np.abs(reported.flows - found.flows) / base))
-        gap = float(abs(reported.flows[worst] - found.flows[worst]) / base[worst])
-        lines.append(
-            Line(
-                f"flows of {name}",
-                float(reported.flows[worst]),
-                float(found.flows[worst]),
-                gap,
-                RELATIVE,
-                "molar_flow",
-            )
-        )
+        given, known = reported.temperature, found.temperature
+        lines.append(Line(f"temperature of {name}", given, known, abs(given - known), KELVIN, "temperature"))
+        pressures = (reported.pressure, found.pressure)
+        lines.append(_relative(f"pressure of {name}", *pressures, RELATIVE, "pressure"))
+        base = np.maximum(np.abs(found.flows), max(LEAST_SHARE * float(found.flows.sum()), 1e-9))
+        gaps = np.abs(reported.flows - found.flows) / base
+        worst = int(np.argmax(gaps))
+        flows = (float(reported.flows[worst]), float(found.flows[worst]))
+        lines.append(Line(f"flows of {name}", *flows, float(gaps[worst]), RELATIVE, "molar_flow"))
+        if reported.liquid.any() or found.liquid.any():
+            shares = (_vapour_share(reported), _vapour_share(found))
+            gap = abs(shares[0] - shares[1])
+            lines.append(Line(f"vapour in {name}", *shares, gap, FRACTION, "fraction"))
     return lines
+
+
+def _vapour_share(stream: Stream) -> float:
+    total = float(stream.flows.sum())
+    return float(stream.vapour.sum()) / total if total else 1.0
 
 
 def _quantities(walk: Walk, point: Point) -> list[Line]:
@@ -214,7 +212,7 @@ def _relative(
     if dimension == "money_per_year" and total is not None:
         base = max(base, 1e-6 * abs(total))
     gap = abs(model - found)
-    return Line(what, model, found, gap / base if base > 0 else 0.0, allowed, dimension)
+    return Line(what, model, found, gap / base if gap != 0.0 else 0.0, allowed, dimension)
 
 
 def _limits(walk: Walk, point: Point) -> list[Line]:
