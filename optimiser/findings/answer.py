@@ -66,6 +66,9 @@ def solve_case(
         answer |= _with_point(workshop, ending, thorough=thorough, progress=progress)
     answer["starts"] = [_start_row(workshop, attempt) for attempt in attempts]
     answer["warnings"] = answer.get("warnings", []) + _spread_warning(attempts, best)
+    if workshop.interrupted:
+        ended = sum(a.ending is not None and a.ending.converged for a in attempts)
+        answer["warnings"].insert(0, f"the run was interrupted: {ended} of {len(attempts)} starts were finished")
     workshop.timing["total"] = time.perf_counter() - clock
     answer["timing"] = workshop.timing
     answer["provenance"] = _provenance(case, seed, starts, backend or default_backend(), workshop)

@@ -131,6 +131,8 @@ def optimise(
     chosen = backend or default_backend()
 
     def solve_one(index: int) -> Ending:
+        if workshop.interrupted:
+            raise RuntimeError("the run was interrupted before this start")
         x0 = workshop.start(points[index])
         options = {"max_iter": EXTRA_ITERATIONS} if index else {}
         return solve(workshop.nlp, x0, backend=chosen, options=options, watch=workshop.watch)
@@ -141,7 +143,9 @@ def optimise(
 
     with _interruptible(workshop):
         clock = time.perf_counter()
-        attempts = run_attempts(solve_one, len(points), done=done, processes=processes)
+        attempts = run_attempts(
+            solve_one, len(points), done=done, processes=processes, stopped=lambda: workshop.interrupted
+        )
         workshop.timing["starts"] = time.perf_counter() - clock
     return attempts
 

@@ -48,6 +48,7 @@ def run_attempts(
     *,
     processes: int | None = None,
     done: Callable[[Attempt], None] | None = None,
+    stopped: Callable[[], bool] = lambda: False,
 ) -> list[Attempt]:
     """Solve all starts.
 
@@ -55,6 +56,7 @@ def run_attempts(
         solve_one: solves the start of an index; called in this process and, where the system can fork, in one more
             for each further core.
         done: told of each finished attempt.
+        stopped: whether the rest is no longer wanted; what other processes have not finished is then given up.
     """
     workers = processes or _workers(count)
     groups = [range(k, count, workers) for k in range(workers)]
@@ -70,6 +72,8 @@ def run_attempts(
         children.append((child, receiver))
     attempts = _run_group(solve_one, groups[0], done)
     for (child, receiver), group in zip(children, groups[1:], strict=True):
+        if stopped():
+            child.terminate()
         attempts += _collect(receiver, group, done)
         child.join()
     return sorted(attempts, key=lambda attempt: attempt.index)
