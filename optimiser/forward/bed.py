@@ -165,6 +165,7 @@ class KineticBeds:
         activity: float,
         positions: Sequence[float] | None = None,
         tolerance: float = AUDIT_TOLERANCE,
+        drag: float = 1.0,
     ) -> BedProfile:
         """One bed.
 
@@ -175,6 +176,7 @@ class KineticBeds:
             activity: of the catalyst, -.
             positions: parts of the volume, ascending; the outlet is added where it is missing.
             tolerance: relative, of the states.
+            drag: part of the pressure drop that counts; less than 1 in starts alone.
 
         Raises:
             BedFailure: the integration ended early, or the pressure fell to nothing.
@@ -183,7 +185,9 @@ class KineticBeds:
         if asked[-1] < 1.0:
             asked = (*asked, 1.0)
         flux = self.properties.mass(inlet.vapour) / size.section
-        parameters = np.array([*inlet.vapour, inlet.pressure, size.volume, size.length, flux, activity])
+        parameters = np.array(
+            [*inlet.vapour, inlet.pressure, size.volume, drag * size.length, flux, activity]
+        )
         first = np.array([*np.zeros(len(self.chemistry.reactions)), inlet.temperature / HOT, 1.0])
         try:
             states = np.array(self.integrator(asked, tolerance)(x0=first, p=parameters)["xf"])

@@ -14,6 +14,7 @@ from optimiser.forward.train import present_coolers
 from optimiser.inputs.case import CoolStep
 
 FIRST_PURGE = 0.02
+LARGEST_GROWTH = 0.5
 LEAST = 1e-12
 """Least flow of a species over that of the make-up; logarithms are taken."""
 
@@ -32,8 +33,16 @@ class Closing:
         self.balance = LoopBalance(self.chemistry, self.fed)
         self.passes = 0
 
-    def run(self, request: BedRequest, tolerance: float, iterations: int) -> tuple[Pieces, Stream]:
+    def run(
+        self, request: BedRequest, tolerance: float, iterations: int, *, must_close: bool = True
+    ) -> tuple[Pieces, Stream]:
         """The last pass and the recycle that it began with.
+
+        Args:
+            request: how beds are to be computed.
+            tolerance: largest change of a logarithm that closes the loop.
+            iterations: most passes, at least 1.
+            must_close: whether a loop that is still open after them is a failure.
 
         Raises:
             ForwardFailure: a pass could not be computed, or the loop did not close.
@@ -46,7 +55,7 @@ class Closing:
             scale = float(np.exp(x[-1]))
             makeup = {name: scale * flow for name, flow in self._first.items()}
             pieces = self._passes.run(self._known, makeup, recycle, request, pieces)
-            image = self._unknowns(self._split(pieces))
+            image = self._unknowns(self._split(pieces), float(x[-1]))
             found = pieces.train.separator
             moved = max(
                 abs(found.pressure / recycle.pressure - 1.0),
@@ -56,6 +65,8 @@ class Closing:
                 return pieces, recycle
             x = mixing.next(x, image)
             recycle = gas_stream("recycle", recycle.vapour, found.temperature, found.pressure)
+        if pieces is not None and not must_close:
+            return pieces, recycle
         raise NotConverged(f"the loop did not close within {iterations} passes")
 
     def _makeup(self) -> dict[str, float]:
@@ -102,17 +113,24 @@ class Closing:
     def _split(self, pieces: Pieces) -> Split:
         """How a pass treats what enters the converter."""
         extents = np.sum([profile.extents[-1] for profile in pieces.reactor.beds.values()], axis=0)
-        separator = pieces.train.separator
-        leaving = separator.vapour + separator.liquid
-        return self.balance.read(
-            pieces.mixed.flows, extents, leaving, separator.liquid, pieces.parted.fraction
-        )
+        purge = pieces.parted.fraction
+        return self.balance.read(pieces.mixed.flows, extents, pieces.train.separator, purge)
 
-    def _unknowns(self, split: Split) -> Floats:
-        """Logarithms of the recycle that closes the loop with the split held, and of the make-up's growth."""
-        recycle, liquid = self.balance.solve(split)
-        scale = 1.0
+    def _unknowns(self, split: Split, present: float = 0.0) -> Floats:
+        """Logarithms of the recycle that closes the loop with the split held, and of the make-up's growth.
+
+        The make-up grows or shrinks by no more than half from its `present` growth (a logarithm), since a
+        pass that condenses nothing says nothing of the make-up that would.
+        """
+        ratio = self.case.loop.recycle_ratio
+        if ratio is not None and ratio.held:
+            recycle, liquid = self.balance.solve_at_ratio(split, needed(self._known, "loop.recycle_ratio"))
+        else:
+            recycle, liquid = self.balance.solve(split)
+        growth = 0.0
         if self.case.feed.product_rate is not None:
-            scale = needed(self._known, "feed.product_rate") / max(self._reporter.product_rate(liquid), LEAST)
-        flows = scale * np.maximum(recycle, LEAST * float(self.fed.sum()))
-        return np.asarray(np.log(np.append(flows, scale)))
+            made = max(self._reporter.product_rate(liquid), LEAST)
+            wanted = float(np.log(needed(self._known, "feed.product_rate") / made))
+            growth = min(max(wanted, present - LARGEST_GROWTH), present + LARGEST_GROWTH)
+        flows = np.log(np.maximum(recycle, LEAST * float(self.fed.sum())))
+        return np.append(flows + growth, growth)

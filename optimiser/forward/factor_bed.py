@@ -66,6 +66,7 @@ class FactorBeds:
         size: BedSize,
         setpoints: dict[str, float],
         coefficients: tuple[float, ...] = (),
+        drag: float = 1.0,
     ) -> BedProfile:
         """The outlet: extents at its own temperature and pressure, enthalpy of the inlet, Ergun over the bed.
 
@@ -77,13 +78,14 @@ class FactorBeds:
             coefficients: of the Damkohler number, where `rate` is damkohler; a fifth is the fall of the
                 squared pressure along the bed over what the outlet's gradient would make of it, 1 where it is
                 left out.
+            drag: part of the pressure drop that counts; less than 1 in starts alone.
 
         Raises:
             BedFailure: no outlet was found, or no pressure is left.
         """
         extents_at = self._law(step, inlet, size, setpoints, coefficients)
         heat = self.properties.gas(inlet.temperature, inlet.pressure, inlet.vapour).enthalpy
-        share = coefficients[4] if len(coefficients) > 4 else 1.0
+        share = drag * (coefficients[4] if len(coefficients) > 4 else 1.0)
         outlet = _Outlet(self, step.name, inlet, size, heat, share)
         extents, temperature, pressure = outlet.found(extents_at)
         flows = reacted(self.chemistry, inlet.vapour, extents)

@@ -5,6 +5,7 @@ Money is in the currency of the case, annual money a year of its hours of operat
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -86,7 +87,8 @@ class Accounts:
         costs = spent | earned | {"total": total}
         shown = {f"capital.{name}": value for name, value in capital.items()}
         shown |= {f"costs.{name}": value for name, value in costs.items()}
-        return shown | {"product.cost": total / (bill.product * self.case.economics.hours_per_year.si)}
+        made = bill.product * self.case.economics.hours_per_year.si
+        return shown | {"product.cost": total / made if made > 0.0 else math.inf}
 
     def _operating(self, bill: Bill) -> dict[str, float]:
         case, year = self.case, self.case.economics.hours_per_year.si

@@ -28,11 +28,13 @@ class BedRequest:
         positions: by bed, parts of the volume at which a profile is wanted.
         tolerance: relative, of the integration.
         damkohler: coefficients by bed (see `factor_bed`); a bed without them is computed by its rate law.
+        drag: part of the beds' pressure drop that counts; less than 1 in starts alone.
     """
 
     positions: Positions = field(default_factory=dict)
     tolerance: float = AUDIT_TOLERANCE
     damkohler: Mapping[str, tuple[float, ...]] = field(default_factory=dict)
+    drag: float = 1.0
 
 
 @dataclass
@@ -169,9 +171,9 @@ class ReactorWalk:
         """A bed by its rate law or by its approach to equilibrium, as the case says."""
         coefficients = request.damkohler.get(step.name, ())
         if step.rate == "kinetic" or (step.rate == "damkohler" and not coefficients):
-            asked = request.positions.get(step.name)
-            return self.kinetic.integrate(step.name, inlet, size, step.activity.si, asked, request.tolerance)
-        return self.factor.solve(step, inlet, size, setpoints, coefficients)
+            how = request.positions.get(step.name), request.tolerance, request.drag
+            return self.kinetic.integrate(step.name, inlet, size, step.activity.si, *how)
+        return self.factor.solve(step, inlet, size, setpoints, coefficients, request.drag)
 
     def _cool_to(self, record: _Cooled, temperature: float, pressure: float) -> Phases:
         flows = record.before.vapour + record.before.liquid

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from typing import Any
 
 import numpy as np
 
@@ -16,7 +17,7 @@ from optimiser.forward.onepass import OnePass
 from optimiser.forward.properties import Properties
 from optimiser.forward.reactor import BedRequest
 from optimiser.forward.report import Pieces, Reporter
-from optimiser.forward.starts import RETREATS, retreated
+from optimiser.forward.starts import attempts
 from optimiser.forward.stream import BedProfile, Stream, Walk, gas_stream
 from optimiser.inputs.case import BedStep, Case
 
@@ -73,6 +74,8 @@ class Section:
         positions: Positions = None,
         damkohler: Coefficients = None,
         bed_tolerance: float = START_TOLERANCE,
+        drag: float = 1.0,
+        must_close: bool = True,
     ) -> Walk:
         """The loop closed, for a start; where the product rate is set, the make-up follows it.
 
@@ -83,14 +86,16 @@ class Section:
             positions: as for `walk`.
             damkohler: as for `walk`.
             bed_tolerance: relative, of the integration of beds.
+            drag: part of the beds' pressure drop that counts; a start may have less than 1.
+            must_close: whether a loop that is open after the last pass is a failure; a start may be open.
 
         Raises:
             ForwardFailure: a pass could not be computed, or the loop did not close.
         """
         known = self._known(setpoints)
-        request = self._request(positions, bed_tolerance, damkohler)
+        request = self._request(positions, bed_tolerance, damkohler, drag)
         closing = Closing(self.passes, self.reporter, known)
-        pieces, recycle = closing.run(request, tolerance, iterations)
+        pieces, recycle = closing.run(request, tolerance, iterations, must_close=must_close)
         walk = self._finished(pieces, known, recycle, approaches=False)
         walk.passes = closing.passes
         return walk
@@ -103,21 +108,25 @@ class Section:
         positions: Positions = None,
         damkohler: Coefficients = None,
     ) -> Walk:
-        """The loop closed at these setpoints or, where that cannot be, at setpoints further inside their
-        ranges.
+        """The loop closed at these setpoints or, where that cannot be, near them (see `starts`).
 
         `Walk.setpoints` says where. Arguments as for `converge`.
 
         Raises:
-            ForwardFailure: of the first try, when the others fail too.
+            ForwardFailure: of the first try, when all others fail too.
         """
-        known, failure = self._known(setpoints), None
-        for _ in range(RETREATS + 1):
+        how: dict[str, Any] = {"tolerance": tolerance, "positions": positions, "damkohler": damkohler}
+        failure: ArithmeticError | None = None
+        for attempt in attempts(self.case, self._known(setpoints)):
+            how |= {
+                "drag": attempt.drag,
+                "iterations": attempt.iterations,
+                "must_close": attempt.must_close,
+            }
             try:
-                return self.converge(known, tolerance=tolerance, positions=positions, damkohler=damkohler)
+                return self.converge(attempt.setpoints, **how)
             except ArithmeticError as problem:
                 failure = failure or problem
-                known = retreated(self.case, known)
         assert failure is not None
         raise failure
 
@@ -166,8 +175,10 @@ class Section:
             return positions
         return {step.name: positions or DENSE for step in self.bed_steps}
 
-    def _request(self, positions: Positions, tolerance: float, damkohler: Coefficients) -> BedRequest:
-        return BedRequest(self._by_bed(positions), tolerance, damkohler or {})
+    def _request(
+        self, positions: Positions, tolerance: float, damkohler: Coefficients, drag: float = 1.0
+    ) -> BedRequest:
+        return BedRequest(self._by_bed(positions), tolerance, damkohler or {}, drag)
 
     def _finished(
         self, pieces: Pieces, known: dict[str, float], recycle: Stream, *, approaches: bool = True
