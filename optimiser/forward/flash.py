@@ -24,6 +24,8 @@ Booleans = NDArray[np.bool_]
 CLOSE = 1e-3
 """Change of ln K at which Newton's method takes over from substitution."""
 EXACT = 1e-12
+DENSE = 0.55
+"""Co-volume over volume above which a phase is a liquid, whichever root was asked for; gases stay far below."""
 ROUNDS = 400
 
 
@@ -84,15 +86,22 @@ def flash_tp(
         if found is not None:
             return found
     gas = properties.gas(temperature, pressure, flows)
-    distance, ratios = _liquid_from(properties, gas)
-    if ratios is None:
-        return Phases(flows, np.zeros_like(flows), temperature, pressure, gas.enthalpy, gas, None, distance)
-    found = _split(properties, flows, temperature, pressure, ratios)
+    dense = gas.packing > DENSE
+    distance, ratios = _beside(properties, gas, liquid=not dense)
+    found = None if ratios is None else _split(properties, flows, temperature, pressure, ratios)
     if found is not None:
         return found
-    # Unstable as a gas, yet no gas stands beside the liquid: all of it condenses.
-    drops = properties.liquid(temperature, pressure, flows)
-    return Phases(np.zeros_like(flows), flows, temperature, pressure, drops.enthalpy, None, drops)
+    if dense or ratios is not None:
+        # Either no other root, or unstable as a gas while no gas stands beside the liquid: all of it is liquid.
+        drops = properties.liquid(temperature, pressure, flows)
+        return Phases(np.zeros_like(flows), flows, temperature, pressure, drops.enthalpy, None, drops)
+    return _alone(gas, distance)
+
+
+def _alone(gas: State, distance: float) -> Phases:
+    """A gas without liquid."""
+    none = np.zeros_like(gas.flows)
+    return Phases(gas.flows, none, gas.temperature, gas.pressure, gas.enthalpy, gas, None, distance)
 
 
 def _ratios_of(near: Phases | None) -> Floats | None:
@@ -102,21 +111,27 @@ def _ratios_of(near: Phases | None) -> Floats | None:
     return near.drops.ln_phi - near.gas.ln_phi
 
 
-def _liquid_from(properties: Properties, gas: State) -> tuple[float, Floats | None]:
-    """Tangent-plane test with a trial liquid.
+def _beside(properties: Properties, bulk: State, *, liquid: bool) -> tuple[float, Floats | None]:
+    """Tangent-plane test of a phase with a trial of the other kind.
+
+    Args:
+        properties: of the mixture.
+        bulk: the phase that may stand alone.
+        liquid: whether the trial is a liquid.
 
     Returns:
-        `Phases.stability`, and ln K to begin with, or None for a gas that stands alone.
+        `Phases.stability`, and ln K to begin with, or None for a phase that stands alone.
     """
-    here = gas.flows > 0
-    fractions = gas.flows / gas.flows.sum()
-    target = np.where(here, np.log(np.where(here, fractions, 1.0)) + gas.ln_phi, 0.0)
-    trial = np.where(here, 1e-3, 0.0)
-    trial[int(np.argmin(np.where(here, gas.ln_phi, np.inf)))] = 1.0
+    here = bulk.flows > 0
+    fractions, ask = bulk.flows / bulk.flows.sum(), properties.liquid if liquid else properties.gas
+    target = np.where(here, np.log(np.where(here, fractions, 1.0)) + bulk.ln_phi, 0.0)
+    trial = np.where(here, 1e-3 if liquid else np.exp(target), 0.0)
+    if liquid:
+        trial[int(np.argmin(np.where(here, bulk.ln_phi, np.inf)))] = 1.0
     total = float(trial.sum())
     for _ in range(ROUNDS):
-        drops = properties.liquid(gas.temperature, gas.pressure, trial / trial.sum())
-        fresh = np.where(here, np.exp(target - drops.ln_phi), 0.0)
+        other = ask(bulk.temperature, bulk.pressure, trial / trial.sum())
+        fresh = np.where(here, np.exp(target - other.ln_phi), 0.0)
         moved = float(np.max(np.abs(np.log(fresh[here] / trial[here]))))
         trial, total = fresh, float(fresh.sum())
         if moved < CLOSE and (total > 1.1 or moved < 1e-10):
@@ -125,7 +140,7 @@ def _liquid_from(properties: Properties, gas: State) -> tuple[float, Floats | No
     if total <= 1.0 + 1e-12 or alike:
         return (np.inf if alike else -float(np.log(total))), None
     # Species that are absent may have any ratio.
-    return 0.0, drops.ln_phi - gas.ln_phi
+    return 0.0, other.ln_phi - bulk.ln_phi if liquid else bulk.ln_phi - other.ln_phi
 
 
 def rachford_rice(fractions: Floats, ratios: Floats, guess: float = 0.5) -> float:
@@ -234,10 +249,9 @@ def flash_ph(
     temperature = guess if isinstance(guess, float) else guess.temperature
     if near is None or near.drops is None:
         alone = properties.gas_at_enthalpy(flows, pressure, enthalpy, temperature)
-        distance, ratios = _liquid_from(properties, alone)
-        if ratios is None:
-            none = np.zeros_like(flows)
-            return Phases(flows, none, alone.temperature, pressure, alone.enthalpy, alone, None, distance)
+        distance, ratios = _beside(properties, alone, liquid=True)
+        if ratios is None and alone.packing < DENSE:
+            return _alone(alone, distance)
         # Condensing releases heat, so both phases together are warmer than the gas alone.
         temperature = alone.temperature
     return _phases_at_enthalpy(properties, flows, enthalpy, pressure, temperature, near)

@@ -19,6 +19,7 @@ from optimiser.chemistry.eos import IdealMix
 from optimiser.chemistry.mixture import Mixture
 from optimiser.forward.stream import FlashFailure, Floats
 
+LARGEST_POLISH = 1e-5
 COLDEST, HOTTEST = 100.0, 2000.0
 """Where Newton's method may look for a temperature, K."""
 
@@ -32,6 +33,7 @@ class State:
         pressure: Pa.
         flows: mol/s, shape (species,).
         compressibility: -.
+        packing: co-volume over volume, -; 0 for an ideal gas.
         enthalpy: W; `heat_capacity` its slope by temperature, W/K.
         entropy: without the ideal mixing term, W/K; `entropy_slope` its slope by temperature, W/K2.
         volume: m3/s.
@@ -42,6 +44,7 @@ class State:
     pressure: float
     flows: Floats
     compressibility: float
+    packing: float
     enthalpy: float
     heat_capacity: float
     entropy: float
@@ -97,9 +100,11 @@ def cubic_roots(c2: float, c1: float, c0: float) -> tuple[float, ...]:
 def _polished(x: float, c2: float, c1: float, c0: float) -> float:
     for _ in range(2):
         slope = (3.0 * x + 2.0 * c2) * x + c1
-        if slope == 0.0:
+        step = (((x + c2) * x + c1) * x + c0) / slope if slope != 0.0 else 0.0
+        # Where roots fall together the slope is round-off, and so would the step be.
+        if abs(step) > LARGEST_POLISH:
             break
-        x -= (((x + c2) * x + c1) * x + c0) / slope
+        x -= step
     return x
 
 
@@ -166,15 +171,15 @@ class _PhaseFunctions:
         logs = casadi.vertcat(*phase.ln_phi)
         return Compiled("slopes", [t, p, n, z], [self._following(phase, z)(logs, n)])
 
-    def root(self, temperature: float, pressure: float, flows: Floats) -> float:
-        """Largest root for a gas, smallest above B for a liquid."""
+    def root(self, temperature: float, pressure: float, flows: Floats) -> tuple[float, float]:
+        """Largest root for a gas, smallest above B for a liquid; and B."""
         if self.coefficients is None:
-            return 1.0
+            return 1.0, 0.0
         c2, c1, c0, b = (float(x[0, 0]) for x in self.coefficients(temperature, pressure, flows))
         roots = [z for z in cubic_roots(c2, c1, c0) if z > b]
         if not roots:
             raise FlashFailure(f"no compressibility at {temperature:.2f} K and {pressure / 1e5:.4g} bar")
-        return roots[0] if self.liquid else roots[-1]
+        return roots[0] if self.liquid else roots[-1], b
 
 
 class Properties:
@@ -204,10 +209,10 @@ class Properties:
 
     @staticmethod
     def _state(phase: _PhaseFunctions, temperature: float, pressure: float, flows: Floats) -> State:
-        root = phase.root(temperature, pressure, flows)
+        root, b = phase.root(temperature, pressure, flows)
         *values, logs = phase.values(temperature, pressure, flows, root)
         heat, capacity, entropy, slope, volume = [float(x[0, 0]) for x in values]
-        given = temperature, pressure, flows, root
+        given = temperature, pressure, flows, root, b / root
         return State(*given, heat, capacity, entropy, slope, volume, logs[:, 0].copy())
 
     def gas_at_enthalpy(self, flows: Floats, pressure: float, enthalpy: float, guess: float) -> State:
