@@ -25,7 +25,7 @@ CLOSE = 1e-3
 """Change of ln K at which Newton's method takes over from substitution."""
 EXACT = 1e-12
 DENSE = 0.55
-"""Co-volume over volume above which a phase is a liquid, whichever root was asked for; gases stay far below."""
+"""Co-volume over volume above which a phase is a liquid, whichever root was asked for."""
 ROUNDS = 400
 
 
@@ -92,7 +92,7 @@ def flash_tp(
     if found is not None:
         return found
     if dense or ratios is not None:
-        # Either no other root, or unstable as a gas while no gas stands beside the liquid: all of it is liquid.
+        # Either no other root, or unstable as a gas while no gas stands beside the liquid: all is liquid.
         drops = properties.liquid(temperature, pressure, flows)
         return Phases(np.zeros_like(flows), flows, temperature, pressure, drops.enthalpy, None, drops)
     return _alone(gas, distance)

@@ -26,8 +26,8 @@ def _by_scipy(
 ) -> tuple[float, ...]:
     """Extent, temperature and pressure at the outlet, and the temperature half-way.
 
-    Radau's method on extent and pressure alone; the temperature is the root of the enthalpy balance at every step,
-    by bisection on the uncompiled formulas.
+    Radau's method on extent and pressure alone; the temperature is the root of the enthalpy balance at every
+    step, by bisection on the uncompiled formulas.
     """
     mixture, catalyst = chemistry.mixture, chemistry.catalyst
     nu = np.array(chemistry.reactions[0].nu)

@@ -1,4 +1,4 @@
-"""Phases at equilibrium: equal fugacities, balances, one phase where there is one, and ammonia over its liquid."""
+"""Phases at equilibrium: equal fugacities, balances, one phase where there is one, ammonia over liquid."""
 
 from __future__ import annotations
 
@@ -114,8 +114,8 @@ def test_rachford_and_rices_equation_is_solved(z: np.ndarray, seed: int) -> None
 
 
 # NH3 over its liquid in 3:1 syngas, mol-%, after Larson and Black, J. Am. Chem. Soc. 47 (1925) 1015, by the
-# correlation log10 C = 4.1856 + 5.987879/sqrt(P/atm) - 1099.544/(T/K): degC, atm, mol-%. From memory; the binary
-# parameters of the model were fitted to the same correlation, so this tests the flash more than the parameters.
+# correlation log10 C = 4.1856 + 5.987879/sqrt(P/atm) - 1099.544/(T/K): degC, atm, mol-%. From memory; the
+# model's binary parameters were fitted to it, so this tests the flash more than the parameters.
 SATURATION = [
     (-20, 100, 2.76),
     (-10, 150, 3.13),
@@ -134,7 +134,7 @@ def test_ammonia_over_its_liquid(properties, celsius: float, atmospheres: float,
 
 
 def test_hydrogen_dissolves_in_the_liquid(properties) -> None:
-    """0.8 mol-% at 25 degC and 100 atm (Wiebe and Tremearne 1934, from memory); a factor of two is what is known."""
+    """0.8 mol-% at 25 degC and 100 atm (Wiebe and Tremearne 1934, from memory), within a factor of two."""
     phases = flash_tp(properties, np.array([0.5, 0.0, 0.5, 0.0, 0.0]), 298.15, 100.0 * ATMOSPHERE)
     assert 0.4 < 100.0 * phases.liquid[H2] / phases.liquid.sum() < 1.6
 

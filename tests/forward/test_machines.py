@@ -22,7 +22,7 @@ SYNGAS = np.array([0.75, 0.25, 0.0, 0.0, 0.0])
 
 
 def _staged(kind: str, stages: int) -> tuple[float, float]:
-    """Work, J/mol, and last discharge temperature, K, of equal-ratio stages with cooling to the inlet between them."""
+    """Work, J/mol, and last discharge temperature, K, of equal-ratio stages, cooled to the inlet between."""
     properties, work = Properties(chemistry_of(kind).mixture), 0.0
     cold, ratio = (
         MAKEUP["inlet_temperature"],

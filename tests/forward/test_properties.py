@@ -57,7 +57,7 @@ def test_slopes_follow_the_root(properties, liquid: bool) -> None:
 
 
 def test_enthalpy_is_that_of_the_fundamental_relations(properties) -> None:
-    """dH = T dS at constant pressure and composition ties enthalpy and entropy; both departures are separate formulas."""
+    """dH = T dS at constant pressure and composition; the two departures are separate formulas."""
     state = properties.gas(320.0, 2e7, GAS)
     assert state.heat_capacity == pytest.approx(320.0 * state.entropy_slope, rel=1e-9)
 
