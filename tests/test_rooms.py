@@ -31,7 +31,9 @@ def _imports(path: Path) -> set[str]:
     for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
         names = []
         if isinstance(node, ast.ImportFrom) and node.module:
-            names = [node.module] if node.module != "optimiser" else [f"optimiser.{a.name}" for a in node.names]
+            names = (
+                [node.module] if node.module != "optimiser" else [f"optimiser.{a.name}" for a in node.names]
+            )
         elif isinstance(node, ast.Import):
             names = [alias.name for alias in node.names]
         rooms |= {name.split(".")[1] for name in names if name.startswith("optimiser.")}

@@ -69,6 +69,8 @@ def dyson_simon_factor(temperature: Any, pressure: Any, fractions: Mapping[str, 
 
 
 # Functions that a model file may name: (function, lowest and highest temperature K, lowest and highest pressure Pa).
-EFFECTIVENESS: dict[str, tuple[Callable[[Any, Any, Mapping[str, Any]], Any], tuple[float, float], tuple[float, float]]] = {
+EFFECTIVENESS: dict[
+    str, tuple[Callable[[Any, Any, Mapping[str, Any]], Any], tuple[float, float], tuple[float, float]]
+] = {
     "dyson_simon": (dyson_simon_factor, (600.0, 770.0), (150.0 * ATMOSPHERE, 300.0 * ATMOSPHERE)),
 }

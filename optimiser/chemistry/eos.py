@@ -52,7 +52,8 @@ class Cubic:
     ) -> None:
         self.kind = KINDS[kind]
         self._b = [
-            self.kind.omega_b * R * tc / pc for tc, pc in zip(critical_temperature, critical_pressure, strict=True)
+            self.kind.omega_b * R * tc / pc
+            for tc, pc in zip(critical_temperature, critical_pressure, strict=True)
         ]
         c0, c1, c2 = self.kind.slope
         # sqrt(a alpha) = p - q sqrt(T) for Soave's alpha: linear in the root of the temperature.
@@ -94,7 +95,10 @@ class CubicMix:
             self.pair_sums.append(roots[i] * total)
             self.slope_sums.append((total, slope))
         a = sum(y * s for y, s in zip(fractions, self.pair_sums, strict=True))
-        slope_a = 2.0 * sum(w * t for w, (t, _) in zip(weighted_slopes, self.slope_sums, strict=True)) + binary_slope
+        slope_a = (
+            2.0 * sum(w * t for w, (t, _) in zip(weighted_slopes, self.slope_sums, strict=True))
+            + binary_slope
+        )
         b = sum(y * bi for y, bi in zip(fractions, eos._b, strict=True))
         rt = R * temperature
         self.a, self.b, self.slope_a, self.rt = a, b, slope_a, rt

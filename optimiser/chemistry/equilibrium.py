@@ -24,7 +24,7 @@ class NoEquilibrium(ArithmeticError):
 
 
 def log_quotients(chemistry: Chemistry, phase: Phase) -> Floats:
-    """ln Q of each reaction, fugacities in bar."""
+    """Ln Q of each reaction, fugacities in bar."""
     logs = np.array([float(x) for x in phase.ln_fugacity])
     return np.array([np.dot(r.nu, np.where(np.array(r.nu) != 0, logs, 0.0)) for r in chemistry.reactions])
 
@@ -88,7 +88,11 @@ def _largest_step(amounts: Floats, change: Floats) -> float:
 
 
 def approach_fraction(
-    chemistry: Chemistry, inlet: Sequence[float], extents: Sequence[float], temperature: float, pressure: float
+    chemistry: Chemistry,
+    inlet: Sequence[float],
+    extents: Sequence[float],
+    temperature: float,
+    pressure: float,
 ) -> list[float]:
     """Extent made over extent at equilibrium at an outlet's temperature and pressure, for each reaction."""
     most = equilibrium_extents(chemistry, inlet, temperature, pressure)

@@ -30,7 +30,7 @@ def _library(x: Any) -> Any:
 
 
 def exp(x: Any) -> Any:
-    """e to the power x."""
+    """E to the power x."""
     return _library(x).exp(x)
 
 
@@ -45,7 +45,7 @@ def sqrt(x: Any) -> Any:
 
 
 def power(x: Any, a: float) -> Any:
-    """x to the constant power a, by products and roots where these say the same."""
+    """X to the constant power a, by products and roots where these say the same."""
     if a == 0:
         return 1.0
     if a == 1:

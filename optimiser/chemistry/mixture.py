@@ -9,13 +9,17 @@ from typing import Any
 from optimiser.chemistry.eos import Cubic, CubicMix, IdealMix
 from optimiser.chemistry.maths import R, exp, log
 from optimiser.chemistry.species import Species
-from optimiser.chemistry.thermo import entropy_sum, enthalpy_sum
+from optimiser.chemistry.thermo import enthalpy_sum, entropy_sum
 
 STANDARD_PRESSURE = 1e5
 
 
 class Mixture:
-    """Species of a model in order, with their equation of state."""
+    """Species of a model in order, with their equation of state.
+
+    `vapour` is None for an ideal gas: then all gas is ideal but for phase equilibrium, which both phases keep to by the
+    cubic equation of the liquid. `liquid=True` in `phase` asks for that equation.
+    """
 
     def __init__(self, species: Sequence[Species], vapour: Cubic | None, liquid: Cubic) -> None:
         self.species = tuple(species)
@@ -45,6 +49,12 @@ class Mixture:
     def liquid(self, temperature: float, pressure: float, flows: Sequence[float]) -> Phase:
         """The liquid root; numbers only."""
         return self._solved(temperature, pressure, flows, liquid=True)
+
+    def condensing(self, temperature: float, pressure: float, flows: Sequence[float]) -> Phase:
+        """The vapour root as phase equilibrium sees it: by the liquid's equation of state; numbers only."""
+        phase = Phase(self, temperature, pressure, flows, 1.0, liquid=True)
+        phase.compressibility = phase.mix.roots()[-1]
+        return phase
 
     def _solved(self, temperature: float, pressure: float, flows: Sequence[float], *, liquid: bool) -> Phase:
         phase = Phase(self, temperature, pressure, flows, 1.0, liquid)
@@ -131,7 +141,9 @@ class Phase:
         """Fugacities, bar; safe where a species is absent."""
         bar = self.pressure / STANDARD_PRESSURE
         ideal = isinstance(self.mix, IdealMix)
-        return [y * bar if ideal else y * bar * exp(p) for y, p in zip(self.fractions, self.ln_phi, strict=True)]
+        return [
+            y * bar if ideal else y * bar * exp(p) for y, p in zip(self.fractions, self.ln_phi, strict=True)
+        ]
 
     @cached_property
     def volume(self) -> Any:

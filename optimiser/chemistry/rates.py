@@ -85,7 +85,7 @@ class RateLaw:
         return forward * self.rate_unit
 
     def _standard_shift(self) -> float:
-        """ln of what turns K in bar into K in the law's pressure unit."""
+        """Ln of what turns K in bar into K in the law's pressure unit."""
         import math
 
         return sum(self.nu) * math.log(1e5 / self.pressure_unit)

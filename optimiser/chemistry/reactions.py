@@ -100,7 +100,9 @@ class Chemistry:
             Reaction(name, tuple(numbers.get(n, 0.0) for n in names), kept)
             for name, numbers in model.reactions.items()
         )
-        laws = tuple(_law(model.rate_laws[r.name], r.nu, names) for r in reactions if r.name in model.rate_laws)
+        laws = tuple(
+            _law(model.rate_laws[r.name], r.nu, names) for r in reactions if r.name in model.rate_laws
+        )
         touched = {n for numbers in model.reactions.values() for n in numbers}
         return cls(
             build_mixture(model, kind, kept),
@@ -125,9 +127,7 @@ class Chemistry:
             for law, reaction in zip(self.laws, self.reactions, strict=True)
         ]
 
-    def range_faults(
-        self, temperatures: tuple[float, float], pressures: tuple[float, float]
-    ) -> list[str]:
+    def range_faults(self, temperatures: tuple[float, float], pressures: tuple[float, float]) -> list[str]:
         """Where a bed leaves the range of its rate law or of its effectiveness factor, in words; K and Pa."""
         catalyst, faults = self.catalyst, []
         ranges = [("rate law", catalyst.temperature_range, catalyst.pressure_range)]

@@ -150,7 +150,12 @@ def empty_ranges(case: Case) -> str:
 def _start_row(workshop: Workshop, attempt: Attempt) -> dict[str, Any]:
     """How one start ended."""
     ending = attempt.ending
-    row: dict[str, Any] = {"objective": None, "status": "no start", "iterations": 0, "seconds": attempt.seconds}
+    row: dict[str, Any] = {
+        "objective": None,
+        "status": "no start",
+        "iterations": 0,
+        "seconds": attempt.seconds,
+    }
     if ending is None:
         return row | {"reason": attempt.reason}
     nlp, units = workshop.nlp, Units(workshop.case)
@@ -179,7 +184,9 @@ def _spread_warning(attempts: list[Attempt], best: Attempt | None) -> list[str]:
     ]
 
 
-def _provenance(case: Case, seed: int, starts: int, backend: str, workshop: Workshop | None) -> dict[str, Any]:
+def _provenance(
+    case: Case, seed: int, starts: int, backend: str, workshop: Workshop | None
+) -> dict[str, Any]:
     """What the numbers rest on."""
     python = ".".join(str(part) for part in sys.version_info[:3])
     return {

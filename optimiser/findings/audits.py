@@ -42,7 +42,7 @@ def audit_point(workshop: Workshop, values: dict[str, float], units: Units) -> d
 
 
 def _row(line: AuditLine, units: Units) -> dict[str, Any]:
-    """A line with numbers in the trade's units; differences in K for temperatures, of fractions as they are, else relative."""
+    """A line in the trade's units; differences in K for temperatures, of fractions as they are, else relative."""
     kelvin = line.dimension in _KELVIN
     size = 1.0 if kelvin or line.dimension == "fraction" else max(abs(line.audit), abs(line.model), 1e-300)
     return {

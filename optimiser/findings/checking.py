@@ -84,7 +84,9 @@ def fuel_warnings(workshop: Workshop) -> list[str]:
     for name, stream in case.feed.streams.items():
         composition = [stream.composition.get(s, 0.0) for s in mixture.names]
         price = stream.price_per_mole(mixture.species, composition)
-        value = sum(y * s.lhv for y, s in zip(composition, mixture.species, strict=True)) * case.prices.fuel.si
+        value = (
+            sum(y * s.lhv for y, s in zip(composition, mixture.species, strict=True)) * case.prices.fuel.si
+        )
         if value > price:
             found.append(
                 f"feed.streams.{name}: its heating value at prices.fuel is worth {value / price:.2f} times its price, "

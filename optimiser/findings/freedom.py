@@ -1,8 +1,8 @@
 """Degrees of freedom from the structure of the equations, and the group that has too many or too few.
 
-Every equation is matched with a variable of its own (Dulmage & Mendelsohn, Can. J. Math. 10 (1958) 517). An equation left
-over, with all that reaches it, is an over-specified group; a variable left over that no decision stands for is an
-under-specified one.
+Every equation is matched with a variable of its own (Dulmage & Mendelsohn, Can. J. Math. 10 (1958) 517). An
+equation left over, with all that reaches it, is an over-specified group; a variable left over that no decision
+stands for is an under-specified one.
 """
 
 from __future__ import annotations

@@ -46,7 +46,9 @@ def fit_factors(workshop: Workshop) -> None:
 
 def _fit(workshop: Workshop, step: BedStep, bed: Any) -> tuple[float, float, float, float]:
     flows = [number(n) for n in bed.inlet.flows]
-    temperature, pressure, volume = (number(v) for v in (bed.inlet.temperature, bed.inlet.pressure, bed.volume))
+    temperature, pressure, volume = (
+        number(v) for v in (bed.inlet.temperature, bed.inlet.pressure, bed.volume)
+    )
 
     def log_number(t: float, p: float, v: float) -> float:
         return _log_number(workshop, step, flows, (t, p), (v, number(bed.diameter)))
@@ -77,11 +79,17 @@ def _fall_share(workshop: Workshop, step: BedStep, bed: Any) -> float:
 
 
 def _log_number(
-    workshop: Workshop, step: BedStep, flows: list[float], state: tuple[float, float], sizes: tuple[float, float]
+    workshop: Workshop,
+    step: BedStep,
+    flows: list[float],
+    state: tuple[float, float],
+    sizes: tuple[float, float],
 ) -> float:
-    """ln Da of the kinetic bed at an inlet temperature and pressure, with a volume and diameter."""
+    """Ln Da of the kinetic bed at an inlet temperature and pressure, with a volume and diameter."""
     outlet = workshop.forward.kinetic_bed(step, flows, state, sizes)
-    most = equilibrium_extents(workshop.chemistry, flows, float(outlet.temperature[-1]), float(outlet.pressure[-1]))
+    most = equilibrium_extents(
+        workshop.chemistry, flows, float(outlet.temperature[-1]), float(outlet.pressure[-1])
+    )
     factor = min(max(float(outlet.extents[-1, 0]) / float(most[0]), 1e-6), _MOST)
     return math.log(-math.log1p(-factor))
 

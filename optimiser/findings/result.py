@@ -83,7 +83,9 @@ def binding_rows(
     return sorted(rows, key=lambda row: -abs(row["worth_per_year"] or row["worth"]))
 
 
-def _binding(section: SectionModel, units: Units, values: dict[str, float], binding: Binding) -> dict[str, Any]:
+def _binding(
+    section: SectionModel, units: Units, values: dict[str, float], binding: Binding
+) -> dict[str, Any]:
     case, edge = section.frame.case, binding.edge
     dimension = section.frame.reported[edge.reported].dimension
     unit = edge.unit or units.unit(edge.reported, dimension)
@@ -164,7 +166,7 @@ def product(
 ) -> dict[str, Any]:
     """Rate, purity, yield and cost of the product, with what one more unit of it costs where its rate is held."""
     frame = section.frame
-    shown = {
+    shown: dict[str, Any] = {
         "rate": units.show("feed.product_rate", "mass_flow", values["product.rate"]),
         "purity": units.show("product.purity", "fraction", values["product.purity"]),
         "yield": units.plain("ratio", values["product.yield"]),

@@ -45,4 +45,6 @@ def _stages(case: Case, point: dict[str, float]) -> None:
         setting = stage.discharge_pressure
         if setting is not None and not setting.held:
             target = feed * ratio**k
-            point[f"compression.{stage.name}.discharge_pressure"] = min(max(target, setting.low), setting.high)
+            point[f"compression.{stage.name}.discharge_pressure"] = min(
+                max(target, setting.low), setting.high
+            )

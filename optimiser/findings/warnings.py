@@ -1,8 +1,8 @@
-"""What a careful colleague would add to a result: ranges left, factors that know no catalyst, credits that pay too well."""
+"""What a careful colleague would add to a result: ranges left, factors that know no catalyst."""
 
 from __future__ import annotations
 
-from optimiser.engineering.costs import gauge_bar, out_of_range
+from optimiser.engineering.costs import gauge_bar
 from optimiser.engineering.vessels import wall_out_of_range
 from optimiser.findings.result import number
 from optimiser.findings.run import Workshop
@@ -29,15 +29,32 @@ def _cost(values: dict[str, float]) -> list[str]:
 
 
 def _correlations(workshop: Workshop) -> list[str]:
-    """Cost correlations used outside the range that they were fitted to."""
+    """Cost correlations used outside the range that they were fitted to, one sentence for each way of leaving it."""
     factor = workshop.case.vessels.design_pressure_factor.si
-    found = []
+    large: list[str] = []
+    small: list[str] = []
+    pressed: list[str] = []
+    highest = 0.0
     for item in workshop.section.frame.bought:
-        gauge = None if item.pressure is None else gauge_bar(factor * number(item.pressure))
-        fault = out_of_range(item.correlation, number(item.size), gauge)
-        if fault is not None:
-            found.append(f"cost of {item.name.replace('_', ' ')}: {fault}")
-    return found
+        size, unit = number(item.size) / item.correlation.scale, item.correlation.unit
+        if size > item.correlation.high:
+            large.append(f"{item.name} ({size:,.0f} of {item.correlation.high:g} {unit})")
+        elif size < item.correlation.low:
+            small.append(f"{item.name} ({size:,.0f} of {item.correlation.low:g} {unit})")
+        if item.pressure is not None and item.correlation.pressure is not None:
+            gauge = float(gauge_bar(factor * number(item.pressure)))
+            if gauge > item.correlation.pressure.high:
+                pressed.append(item.name)
+                highest = max(highest, gauge)
+    return [
+        *_listed("costed as several units side by side, being larger than their correlation's range", large),
+        *_listed("costed as the smallest unit of their correlation's range", small),
+        *_listed(f"pressure factor of the cost extrapolated, to {highest:.0f} barg", pressed),
+    ]
+
+
+def _listed(what: str, names: list[str]) -> list[str]:
+    return [f"{what}: {', '.join(names)}"] if names else []
 
 
 def _walls(workshop: Workshop, values: dict[str, float]) -> list[str]:

@@ -57,11 +57,7 @@ class AuditLine:
     @property
     def share(self) -> float:
         """Difference over what is allowed; infinite where nothing is."""
-        return (
-            self.difference / self.allowed
-            if self.allowed > 0.0
-            else (math.inf if self.difference > 0.0 else 0.0)
-        )
+        return self.difference / self.allowed if self.allowed > 0.0 else (math.inf if self.difference > 0.0 else 0.0)
 
 
 def compared(what: str, model: float, audit: float, allowed: float, dimension: str) -> AuditLine:
@@ -91,9 +87,7 @@ class Comparison:
             size = min(given, float(fed[k])) if fed[k] > 0.0 else given
             allowed = RELATIVE * size + TRACE * total
             yield compared(f"loop closure of {name}", given, found, allowed, "molar_flow")
-        yield compared(
-            "loop closure of temperature", recycle.temperature, back.temperature, TEMPERATURE, "temperature"
-        )
+        yield compared("loop closure of temperature", recycle.temperature, back.temperature, TEMPERATURE, "temperature")
         # What the circulator makes up is a small part of the pressure, and its power goes with that part.
         allowed = RELATIVE * (self.walk.quantities["loop.pressure"] - back.pressure)
         yield compared("loop closure of pressure", recycle.pressure, back.pressure, allowed, "pressure")
@@ -106,9 +100,7 @@ class Comparison:
                 yield _unknown(f"stream {name}")
                 continue
             what = f"stream {name}"
-            yield compared(
-                f"{what}: temperature", stream.temperature, found.temperature, TEMPERATURE, "temperature"
-            )
+            yield compared(f"{what}: temperature", stream.temperature, found.temperature, TEMPERATURE, "temperature")
             allowed = RELATIVE * found.pressure
             yield compared(f"{what}: pressure", stream.pressure, found.pressure, allowed, "pressure")
             room = RELATIVE * np.abs(found.flows) + TRACE * found.total

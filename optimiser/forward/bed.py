@@ -152,9 +152,7 @@ class KineticBeds:
                 "disable_internal_warnings": True,
                 "show_eval_warnings": False,
             }
-            self._integrators[key] = casadi.integrator(
-                "bed", "cvodes", problem, 0.0, list(positions), options
-            )
+            self._integrators[key] = casadi.integrator("bed", "cvodes", problem, 0.0, list(positions), options)
         return self._integrators[key]
 
     def integrate(
@@ -185,18 +183,14 @@ class KineticBeds:
         if asked[-1] < 1.0:
             asked = (*asked, 1.0)
         flux = self.properties.mass(inlet.vapour) / size.section
-        parameters = np.array(
-            [*inlet.vapour, inlet.pressure, size.volume, drag * size.length, flux, activity]
-        )
+        parameters = np.array([*inlet.vapour, inlet.pressure, size.volume, drag * size.length, flux, activity])
         first = np.array([*np.zeros(len(self.chemistry.reactions)), inlet.temperature / HOT, 1.0])
         try:
             states = np.array(self.integrator(asked, tolerance)(x0=first, p=parameters)["xf"])
         except RuntimeError as problem:
             raise BedFailure(name, "the integration ended before the outlet") from problem
         if not np.all(np.isfinite(states)) or states[-1].min() < LOST_SQUARE:
-            raise BedFailure(
-                name, "the pressure falls to nothing before the outlet: too long, or too slender"
-            )
+            raise BedFailure(name, "the pressure falls to nothing before the outlet: too long, or too slender")
         rates = np.array(self._rates(states, np.tile(parameters[:, None], states.shape[1])))
         given = name, inlet, np.array(asked), states, rates, size.length
         return self._profile(*given, everywhere=tolerance <= AUDIT_TOLERANCE)
@@ -220,12 +214,8 @@ class KineticBeds:
         heat = self.properties.gas(inlet.temperature, inlet.pressure, inlet.vapour).enthalpy
         temperatures = HOT * states[count]
         for k in range(len(positions)) if everywhere else (-1,):
-            balanced = self.properties.gas_at_enthalpy(
-                flows[k], float(pressures[k]), heat, float(temperatures[k])
-            )
+            balanced = self.properties.gas_at_enthalpy(flows[k], float(pressures[k]), heat, float(temperatures[k]))
             temperatures[k] = balanced.temperature
         outlet = gas_stream(f"reactor.{name}.out", flows[-1], float(temperatures[-1]), float(pressures[-1]))
         hottest = max(inlet.temperature, float(temperatures.max()))
-        return BedProfile(
-            positions, extents, temperatures, pressures, rates.T, hottest, inlet, outlet, length
-        )
+        return BedProfile(positions, extents, temperatures, pressures, rates.T, hottest, inlet, outlet, length)

@@ -75,9 +75,7 @@ class Closing:
         if self.case.feed.product_rate is None:
             return {name: needed(known, f"feed.streams.{name}.flow") for name in streams}
         shares = {
-            name: needed(known, f"feed.streams.{name}.share")
-            for name, s in streams.items()
-            if s.share is not None
+            name: needed(known, f"feed.streams.{name}.share") for name, s in streams.items() if s.share is not None
         }
         left = 1.0 - sum(shares.values())
         rest = [name for name in streams if name not in shares]

@@ -112,9 +112,7 @@ class FactorBeds:
         else:
             chemistry = displaced(chemistry, needed(setpoints, f"{path}.approach_temperature"))
         flows = inlet.vapour.tolist()
-        return lambda temperature, pressure: (
-            factor * equilibrium_extents(chemistry, flows, temperature, pressure)
-        )
+        return lambda temperature, pressure: factor * equilibrium_extents(chemistry, flows, temperature, pressure)
 
 
 @dataclass
@@ -155,9 +153,7 @@ class _Outlet:
             a, fa = (b, fb) if fm * fb < 0 else (a, 0.5 * fa)
             b, fb = middle, fm
         else:
-            raise BedFailure(
-                self.name, "no outlet was found at which the stated approach and the heat balance agree"
-            )
+            raise BedFailure(self.name, "no outlet was found at which the stated approach and the heat balance agree")
         made, pressure = self._balanced(extents, pressure, middle)
         return extents, made, pressure
 
@@ -175,9 +171,7 @@ class _Outlet:
             fall = 2.0 * pressure * gradient * self.size.length * self.fall_share
             square = self.inlet.pressure**2 - fall
             if square <= 1e-2 * self.inlet.pressure**2:
-                raise BedFailure(
-                    self.name, "the pressure falls to nothing before the outlet: too long, or too slender"
-                )
+                raise BedFailure(self.name, "the pressure falls to nothing before the outlet: too long, or too slender")
             fresh = math.sqrt(square)
             if abs(fresh - pressure) < 1e-12 * pressure:
                 break

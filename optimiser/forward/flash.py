@@ -27,6 +27,7 @@ EXACT = 1e-12
 DENSE = 0.55
 """Co-volume over volume above which a phase is a liquid, whichever root was asked for."""
 ROUNDS = 400
+COLDEST_DEW, HOTTEST_DEW = 180.0, 520.0
 
 
 @dataclass
@@ -85,7 +86,7 @@ def flash_tp(
         found = _split(properties, flows, temperature, pressure, ratios)
         if found is not None:
             return found
-    gas = properties.gas(temperature, pressure, flows)
+    gas = properties.vapour(temperature, pressure, flows)
     dense = gas.packing > DENSE
     distance, ratios = _beside(properties, gas, liquid=not dense)
     found = None if ratios is None else _split(properties, flows, temperature, pressure, ratios)
@@ -111,6 +112,14 @@ def _ratios_of(near: Phases | None) -> Floats | None:
     return near.drops.ln_phi - near.gas.ln_phi
 
 
+@dataclass(frozen=True)
+class _Trial:
+    """Another phase beside a phase: `gain` is positive where it would form, minus infinity where it is the same."""
+
+    gain: float
+    state: State
+
+
 def _beside(properties: Properties, bulk: State, *, liquid: bool) -> tuple[float, Floats | None]:
     """Tangent-plane test of a phase with a trial of the other kind.
 
@@ -122,8 +131,18 @@ def _beside(properties: Properties, bulk: State, *, liquid: bool) -> tuple[float
     Returns:
         `Phases.stability`, and ln K to begin with, or None for a phase that stands alone.
     """
+    trial = _trial(properties, bulk, liquid=liquid)
+    if trial.gain <= 1e-12:
+        return -trial.gain, None
+    # Species that are absent may have any ratio.
+    other = trial.state.ln_phi
+    return 0.0, other - bulk.ln_phi if liquid else bulk.ln_phi - other
+
+
+def _trial(properties: Properties, bulk: State, *, liquid: bool, early: bool = True) -> _Trial:
+    """The phase nearest to forming, by substitution; `early` stops as soon as it is sure to form."""
     here = bulk.flows > 0
-    fractions, ask = bulk.flows / bulk.flows.sum(), properties.liquid if liquid else properties.gas
+    fractions, ask = bulk.flows / bulk.flows.sum(), properties.liquid if liquid else properties.vapour
     target = np.where(here, np.log(np.where(here, fractions, 1.0)) + bulk.ln_phi, 0.0)
     trial = np.where(here, 1e-3 if liquid else np.exp(target), 0.0)
     if liquid:
@@ -134,13 +153,38 @@ def _beside(properties: Properties, bulk: State, *, liquid: bool) -> tuple[float
         fresh = np.where(here, np.exp(target - other.ln_phi), 0.0)
         moved = float(np.max(np.abs(np.log(fresh[here] / trial[here]))))
         trial, total = fresh, float(fresh.sum())
-        if moved < CLOSE and (total > 1.1 or moved < 1e-10):
+        if (early and moved < CLOSE and total > 1.1) or moved < 1e-10:
             break
     alike = float(np.max(np.abs(np.log(trial[here] / fractions[here])))) < CLOSE
-    if total <= 1.0 + 1e-12 or alike:
-        return (np.inf if alike else -float(np.log(total))), None
-    # Species that are absent may have any ratio.
-    return 0.0, other.ln_phi - bulk.ln_phi if liquid else bulk.ln_phi - other.ln_phi
+    return _Trial(-np.inf if alike else float(np.log(total)), other)
+
+
+@dataclass(frozen=True)
+class Dew:
+    """Where a gas forms its first drop: temperature, K, and the drop's mole fractions."""
+
+    temperature: float
+    fractions: Floats
+
+
+def dew_point(properties: Properties, flows: Floats, pressure: float, guess: float = 320.0) -> Dew:
+    """The dew point of a gas at a pressure (Pa), to a hundredth of a kelvin.
+
+    Raises:
+        FlashFailure: no liquid forms between `COLDEST_DEW` and `HOTTEST_DEW`.
+    """
+    low, high, temperature = COLDEST_DEW, HOTTEST_DEW, guess
+    drop: _Trial | None = None
+    while high - low > 0.01:
+        trial = _trial(properties, properties.vapour(temperature, pressure, flows), liquid=True, early=False)
+        if trial.gain > 0.0:
+            low, drop = temperature, trial
+        else:
+            high = temperature
+        temperature = 0.5 * (low + high)
+    if drop is None:
+        raise FlashFailure(f"no liquid forms at {pressure / 1e5:.4g} bar above {COLDEST_DEW:.0f} K")
+    return Dew(low, drop.state.flows)
 
 
 def rachford_rice(fractions: Floats, ratios: Floats, guess: float = 0.5) -> float:
@@ -167,9 +211,7 @@ def rachford_rice(fractions: Floats, ratios: Floats, guess: float = 0.5) -> floa
     return v
 
 
-def _split(
-    properties: Properties, flows: Floats, temperature: float, pressure: float, logs: Floats
-) -> Phases | None:
+def _split(properties: Properties, flows: Floats, temperature: float, pressure: float, logs: Floats) -> Phases | None:
     """Two phases from a guess of ln K; None where they turn out to be one."""
     total = float(flows.sum())
     fractions, here, v = flows / total, flows > 0, 0.5
@@ -191,7 +233,7 @@ def _split(
 def _states(
     properties: Properties, flows: Floats, liquid: Floats, temperature: float, pressure: float
 ) -> tuple[State, State]:
-    gas = properties.gas(temperature, pressure, flows - liquid)
+    gas = properties.vapour(temperature, pressure, flows - liquid)
     return gas, properties.liquid(temperature, pressure, liquid)
 
 
@@ -210,9 +252,7 @@ def _newton(properties: Properties, flows: Floats, gas: State, drops: State) -> 
         if float(np.max(np.abs(error))) < EXACT:
             heat = gas.enthalpy + drops.enthalpy
             return Phases(gas.flows, drops.flows, temperature, pressure, heat, gas, drops)
-        slopes = properties.fugacity_slopes(drops, liquid=True) + properties.fugacity_slopes(
-            gas, liquid=False
-        )
+        slopes = properties.fugacity_slopes(drops, liquid=True) + properties.fugacity_slopes(gas, liquid=False)
         slopes -= 1.0 / drops.flows.sum() + 1.0 / gas.flows.sum()
         small = slopes[np.ix_(here, here)]
         small += np.diag(1.0 / drops.flows[here] + 1.0 / gas.flows[here])
@@ -234,9 +274,7 @@ def _share(liquid: Floats, vapour: Floats, step: Floats) -> float:
     return float(min(1.0, 0.9 * np.min(room / np.maximum(np.abs(step), 1e-300))))
 
 
-def flash_ph(
-    properties: Properties, flows: Floats, enthalpy: float, pressure: float, guess: float | Phases
-) -> Phases:
+def flash_ph(properties: Properties, flows: Floats, enthalpy: float, pressure: float, guess: float | Phases) -> Phases:
     """Phases of an enthalpy flow (W) at a pressure (Pa).
 
     Args:
@@ -248,7 +286,8 @@ def flash_ph(
     near = None if isinstance(guess, float) else guess
     temperature = guess if isinstance(guess, float) else guess.temperature
     if near is None or near.drops is None:
-        alone = properties.gas_at_enthalpy(flows, pressure, enthalpy, temperature)
+        found = properties.gas_at_enthalpy(flows, pressure, enthalpy, temperature)
+        alone = properties.vapour(found.temperature, pressure, flows)
         distance, ratios = _beside(properties, alone, liquid=True)
         if ratios is None and alone.packing < DENSE:
             return _alone(alone, distance)

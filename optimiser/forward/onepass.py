@@ -6,6 +6,7 @@ import numpy as np
 
 from optimiser.chemistry.reactions import Chemistry
 from optimiser.forward.bed import needed
+from optimiser.forward.flash import Dew, dew_point
 from optimiser.forward.machines import compress, compress_makeup, feed_flows, mixed_makeup
 from optimiser.forward.properties import Properties, State
 from optimiser.forward.reactor import BedRequest, ReactorWalk
@@ -51,9 +52,7 @@ class OnePass:
             raise SetpointFailure("loop.feed_pressure_drop leaves no pressure")
         feed = properties.gas_at_enthalpy(mixed.flows, lower, mixed.enthalpy, mixed.temperature)
         reactor = self.reactor.walk(feed, setpoints, request, None if near is None else near.reactor.outlet)
-        train = condense(
-            case, properties, reactor.outlet, side, setpoints, None if near is None else near.train
-        )
+        train = condense(case, properties, reactor.outlet, side, setpoints, None if near is None else near.train)
         parted = part(case, train.separator.vapour, sum(makeup.values()), setpoints)
         return Pieces(makeup, entry, stages, side, circulator, mixed, reactor, train, parted)
 
@@ -92,9 +91,7 @@ class OnePass:
         names, found = self.chemistry.mixture.names, {}
         for name, stream in self.case.feed.streams.items():
             flows = feed_flows(self.case, names, name, pieces.makeup[name])
-            found[f"feed.{name}"] = gas_stream(
-                f"feed.{name}", flows, stream.temperature.si, stream.pressure.si
-            )
+            found[f"feed.{name}"] = gas_stream(f"feed.{name}", flows, stream.temperature.si, stream.pressure.si)
         return found | {"makeup": _stream("makeup", pieces.entry)}
 
     def _parted_streams(self, pieces: Pieces) -> dict[str, Stream]:
@@ -107,6 +104,17 @@ class OnePass:
         }
         nothing = np.zeros_like(separator.liquid)
         return found | {"product": Stream("product", nothing, separator.liquid, *state)}
+
+    def dews(self, pieces: Pieces) -> dict[str, Dew]:
+        """Dew points of what goes through coolers that may condense it and stays gas, by stream."""
+        found = {f"condensation.{name}.out": phases for name, phases in pieces.train.stages.items()}
+        found |= pieces.reactor.flashed
+        gases = {name: phases for name, phases in found.items() if phases.drops is None}
+        at: dict[float, Dew] = {}
+        for phases in gases.values():
+            if phases.pressure not in at:
+                at[phases.pressure] = dew_point(self.properties, phases.vapour, phases.pressure)
+        return {name: at[phases.pressure] for name, phases in gases.items()}
 
 
 def _stream(name: str, state: State) -> Stream:

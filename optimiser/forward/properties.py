@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any
 
@@ -62,9 +62,7 @@ class Compiled:
         function = casadi.Function(name, arguments, [casadi.densify(casadi.SX(r)) for r in results])
         self._buffer, self._run = function.buffer()
         self.inputs: list[Floats] = [np.zeros(function.nnz_in(k)) for k in range(function.n_in())]
-        self.outputs: list[Floats] = [
-            np.zeros(function.size_out(k), order="F") for k in range(function.n_out())
-        ]
+        self.outputs: list[Floats] = [np.zeros(function.size_out(k), order="F") for k in range(function.n_out())]
         for k, array in enumerate(self.inputs):
             self._buffer.set_arg(k, array.data)
         for k, array in enumerate(self.outputs):
@@ -109,10 +107,15 @@ def _polished(x: float, c2: float, c1: float, c0: float) -> float:
 
 
 class _PhaseFunctions:
-    """Compiled functions of one kind of phase."""
+    """Compiled functions of one equation of state."""
 
     def __init__(self, mixture: Mixture, *, liquid: bool) -> None:
         self.mixture, self.liquid, self.count = mixture, liquid, len(mixture.names)
+
+    @property
+    def ideal(self) -> bool:
+        """Whether it is that of the ideal gas."""
+        return self.coefficients is None
 
     def _symbols(self) -> tuple[Any, Any, Any, Any, Any]:
         import casadi
@@ -171,15 +174,15 @@ class _PhaseFunctions:
         logs = casadi.vertcat(*phase.ln_phi)
         return Compiled("slopes", [t, p, n, z], [self._following(phase, z)(logs, n)])
 
-    def root(self, temperature: float, pressure: float, flows: Floats) -> tuple[float, float]:
-        """Largest root for a gas, smallest above B for a liquid; and B."""
+    def root(self, temperature: float, pressure: float, flows: Floats, least: bool) -> tuple[float, float]:
+        """The least root above B, a liquid's, or the largest, a gas's; and B."""
         if self.coefficients is None:
             return 1.0, 0.0
         c2, c1, c0, b = (float(x[0, 0]) for x in self.coefficients(temperature, pressure, flows))
         roots = [z for z in cubic_roots(c2, c1, c0) if z > b]
         if not roots:
             raise FlashFailure(f"no compressibility at {temperature:.2f} K and {pressure / 1e5:.4g} bar")
-        return roots[0] if self.liquid else roots[-1], b
+        return roots[0] if least else roots[-1], b
 
 
 class Properties:
@@ -188,28 +191,42 @@ class Properties:
     def __init__(self, mixture: Mixture) -> None:
         self.mixture = mixture
         self.molar_mass = np.array(mixture.molar_mass)
-        self._phases = (_PhaseFunctions(mixture, liquid=False), _PhaseFunctions(mixture, liquid=True))
+        self._gas, self._liquid = (_PhaseFunctions(mixture, liquid=liquid) for liquid in (False, True))
 
     def gas(self, temperature: float, pressure: float, flows: Floats) -> State:
         """The gas at a temperature (K), pressure (Pa) and flows (mol/s)."""
-        return self._state(self._phases[0], temperature, pressure, flows)
+        return self._state(self._gas, temperature, pressure, flows, least=False)
 
     def liquid(self, temperature: float, pressure: float, flows: Floats) -> State:
         """The liquid at a temperature (K), pressure (Pa) and flows (mol/s)."""
-        return self._state(self._phases[1], temperature, pressure, flows)
+        return self._state(self._liquid, temperature, pressure, flows, least=True)
+
+    def vapour(self, temperature: float, pressure: float, flows: Floats) -> State:
+        """The gas as phase equilibrium sees it: `gas`, with the fugacities of the liquid's equation of state.
+
+        The two differ where gas is otherwise taken as ideal.
+        """
+        gas = self.gas(temperature, pressure, flows)
+        if not self._gas.ideal:
+            return gas
+        real = self._state(self._liquid, temperature, pressure, flows, least=False)
+        return replace(gas, ln_phi=real.ln_phi, packing=real.packing)
 
     def fugacity_slopes(self, state: State, *, liquid: bool) -> Floats:
-        """d(ln phi)/d(flow) of a state, s/mol, shape (species, species)."""
-        function = self._phases[1 if liquid else 0].slopes
-        return function(state.temperature, state.pressure, state.flows, state.compressibility)[0].copy()
+        """d(ln phi)/d(flow) of a liquid or a vapour, s/mol, shape (species, species)."""
+        at, root = (state.temperature, state.pressure, state.flows), state.compressibility
+        if not liquid and self._gas.ideal:
+            root, _ = self._liquid.root(*at, least=False)
+        functions = self._liquid if liquid or self._gas.ideal else self._gas
+        return functions.slopes(*at, root)[0].copy()
 
     def mass(self, flows: Floats) -> float:
         """Mass flow, kg/s."""
         return float(self.molar_mass @ flows)
 
     @staticmethod
-    def _state(phase: _PhaseFunctions, temperature: float, pressure: float, flows: Floats) -> State:
-        root, b = phase.root(temperature, pressure, flows)
+    def _state(phase: _PhaseFunctions, temperature: float, pressure: float, flows: Floats, *, least: bool) -> State:
+        root, b = phase.root(temperature, pressure, flows, least)
         *values, logs = phase.values(temperature, pressure, flows, root)
         heat, capacity, entropy, slope, volume = [float(x[0, 0]) for x in values]
         given = temperature, pressure, flows, root, b / root

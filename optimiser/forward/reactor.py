@@ -47,6 +47,7 @@ class ReactorPass:
         beds: by name; `sizes` likewise.
         exchangers: in the order of the steps.
         duties: heat by sink, W.
+        flashed: phases after coolers that may condense, by stream.
         feed_gap: heat that the feed lacks after its last exchanger, W; round-off where one of them closes the
             balance.
     """
@@ -57,6 +58,7 @@ class ReactorPass:
     sizes: dict[str, BedSize] = field(default_factory=dict)
     exchangers: list[Exchanged] = field(default_factory=list)
     duties: dict[str, float] = field(default_factory=dict)
+    flashed: dict[str, Phases] = field(default_factory=dict)
     feed_gap: float = 0.0
 
 
@@ -125,9 +127,7 @@ class ReactorWalk:
                 raise SetpointFailure(f"reactor.{step.name}: no pressure is left")
             if target is not None:
                 record.after = self._cool_to(record, target, pressure)
-            gas = record.after or Phases(
-                gas.vapour, gas.liquid, gas.temperature, pressure, np.nan, None, None
-            )
+            gas = record.after or Phases(gas.vapour, gas.liquid, gas.temperature, pressure, np.nan, None, None)
             cooled.append(record)
         self._close(cooled, heated.enthalpy - feed.enthalpy, near)
         result.outlet = gas if cooled == [] or isinstance(steps[-1], BedStep) else _done(cooled[-1])
@@ -194,9 +194,7 @@ class ReactorWalk:
         record, *later = cooled[waiting[0] :]
         following = later[0] if later else None
         if len(waiting) > 1 or (following is not None and following.step.sink == "feed"):
-            raise SetpointFailure(
-                f"reactor.{record.step.name}: what it leaves to the next feed exchanger is not said"
-            )
+            raise SetpointFailure(f"reactor.{record.step.name}: what it leaves to the next feed exchanger is not said")
         others = sum(r.duty for r in cooled if r.step.sink == "feed" and r is not record)
         left = record.before.enthalpy - (heat - others)
         pressure = record.before.pressure - record.step.pressure_drop.si
@@ -220,9 +218,7 @@ class ReactorWalk:
             step = record.step
             if step.sink == "feed":
                 enthalpy += record.duty
-                warm = self.properties.gas_at_enthalpy(
-                    feed.flows, feed.pressure, enthalpy, temperature + 50.0
-                )
+                warm = self.properties.gas_at_enthalpy(feed.flows, feed.pressure, enthalpy, temperature + 50.0)
                 cold = temperature, warm.temperature
                 temperature = warm.temperature
                 name = f"feed.after.{step.name}"
@@ -233,6 +229,8 @@ class ReactorWalk:
             result.duties[step.sink] = result.duties.get(step.sink, 0.0) + record.duty
             name = f"reactor.{step.name}.out"
             result.streams[name] = _done(record).stream(name)
+            if record.flashed:
+                result.flashed[name] = _done(record)
         result.exchangers = [exchangers[record.step.name] for record in cooled]
         result.feed_gap = heated.enthalpy - enthalpy
 

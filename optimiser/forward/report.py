@@ -53,9 +53,7 @@ class Reporter:
         """Contained product in a liquid, kg/s."""
         return float(sum(liquid[k] * self.properties.molar_mass[k] for k in self._products))
 
-    def quantities(
-        self, pieces: Pieces, setpoints: dict[str, float], *, approaches: bool = True
-    ) -> dict[str, float]:
+    def quantities(self, pieces: Pieces, setpoints: dict[str, float], *, approaches: bool = True) -> dict[str, float]:
         """All quantities; setpoints that nothing else gives are reported as they were set.
 
         Args:

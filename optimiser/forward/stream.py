@@ -18,6 +18,7 @@ from numpy.typing import NDArray
 
 if TYPE_CHECKING:
     from optimiser.chemistry.mixture import Mixture
+    from optimiser.forward.flash import Dew
 
 Floats = NDArray[np.float64]
 
@@ -141,6 +142,7 @@ class Walk:
         passes: how many passes were made.
         makeup: flow of each feed stream, mol/s.
         setpoints: that the pass was made at, SI by path.
+        dews: dew points of the streams of gas that could condense but do not, by name; of starts alone.
     """
 
     streams: dict[str, Stream]
@@ -152,3 +154,4 @@ class Walk:
     passes: int = 1
     makeup: dict[str, float] = field(default_factory=dict)
     setpoints: dict[str, float] = field(default_factory=dict)
+    dews: dict[str, Dew] = field(default_factory=dict)

@@ -114,9 +114,7 @@ def condense(
     return train
 
 
-def _exchanged(
-    case: Case, train: TrainPass, name: str, before: Phases, after: Phases, recycle: ColdSide
-) -> None:
+def _exchanged(case: Case, train: TrainPass, name: str, before: Phases, after: Phases, recycle: ColdSide) -> None:
     """Duty, area and cold side of one cooler."""
     plant, water = getattr(case.condensation, name), case.utilities
     duty = before.enthalpy - after.enthalpy

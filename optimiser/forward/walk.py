@@ -98,6 +98,7 @@ class Section:
         pieces, recycle = closing.run(request, tolerance, iterations, must_close=must_close)
         walk = self._finished(pieces, known, recycle, approaches=False)
         walk.passes = closing.passes
+        walk.dews = self.passes.dews(pieces)
         return walk
 
     def start(
@@ -180,9 +181,7 @@ class Section:
     ) -> BedRequest:
         return BedRequest(self._by_bed(positions), tolerance, damkohler or {}, drag)
 
-    def _finished(
-        self, pieces: Pieces, known: dict[str, float], recycle: Stream, *, approaches: bool = True
-    ) -> Walk:
+    def _finished(self, pieces: Pieces, known: dict[str, float], recycle: Stream, *, approaches: bool = True) -> Walk:
         streams = self.passes.streams(pieces)
         return Walk(
             streams,

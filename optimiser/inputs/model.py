@@ -49,7 +49,9 @@ def _sourced(*dimensions: str) -> Any:
         if unknown:
             raise fault(f"unknown key {sorted(unknown)[0]}", "value, source, confidence, range or note")
         if value.get("confidence") not in Confidence.__args__:  # type: ignore[attr-defined]
-            raise fault("no confidence is stated", "confidence: confirmed, quoted, fitted, from memory or invented")
+            raise fault(
+                "no confidence is stated", "confidence: confirmed, quoted, fitted, from memory or invented"
+            )
         quantity = kind.read(value["value"], info)
         assert isinstance(quantity, Quantity)
         return Sourced(quantity.si, quantity.unit, str(value.get("source", "")), str(value["confidence"]))
@@ -166,7 +168,7 @@ class LawData(Section):
 
     @property
     def log_factor(self) -> float:
-        """ln of the prefactor."""
+        """Ln of the prefactor."""
         return math.log(self.constant.factor)
 
     @property
@@ -184,7 +186,7 @@ class LawData(Section):
 
     @property
     def rate_size(self) -> float:
-        """mol per m3 of bed and second in one unit of the law's rate."""
+        """Mol per m3 of bed and second in one unit of the law's rate."""
         return RATES[self.rate_unit]
 
 
@@ -196,12 +198,12 @@ class Model(Section):
     title: str
     products: Annotated[tuple[str, ...], Field(min_length=1)]
     key_reactant: str
-    sources: dict[str, str] = {}
+    sources: dict[str, str] = Field({})
     species: dict[str, SpeciesData]
     binary: Binary = Binary()
     reactions: dict[str, dict[str, float]]
     catalyst: CatalystData
-    rate_laws: dict[str, LawData] = {}
+    rate_laws: dict[str, LawData] = Field({})
     effectiveness: str | None = None
     path: Path | None = Field(None, exclude=True)
     sha256: str = Field("", exclude=True)

@@ -44,7 +44,9 @@ class BedStep(Section):
         reason="sized for the end of a run, not its start",
     )
     elements: Annotated[StrictInt, Field(ge=2, le=60)] = said(
-        8, meaning="pieces into which the bed is cut for the calculation", reason="outlets within 0.01 K"
+        5,
+        meaning="collocation elements along the bed",
+        reason="outlets within 0.05 K, points inside within 1 K of a stiff integration",
     )
     approach_fraction: ShareSetting | None = said(
         None, meaning="extent over extent at equilibrium (rate: approach)"

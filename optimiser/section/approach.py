@@ -46,7 +46,9 @@ def _equilibrium_temperature(frame: Frame, block: Block, reaction: Any, phase: A
         block, f"equilibrium_temperature_{reaction.name}", "temperature", 250.0, 1500.0, start=750.0
     )
     residual = _log_quotient(reaction, phase) - reaction.ln_k(temperature)
-    frame.give(temperature, frame.equation(block, f"equilibrium_temperature_{reaction.name}_is", residual == 0))
+    frame.give(
+        temperature, frame.equation(block, f"equilibrium_temperature_{reaction.name}_is", residual == 0)
+    )
     return temperature
 
 
@@ -72,9 +74,7 @@ def report_temperature(frame: Frame, name: str, outlet: Gas) -> None:
     frame.report(f"reactor.{name}.approach_temperature", "temperature_difference", approach)
 
 
-def close_by_factor(
-    frame: Frame, block: Block, step: BedStep, inlet: Gas, point: Any, volume: Any
-) -> None:
+def close_by_factor(frame: Frame, block: Block, step: BedStep, inlet: Gas, point: Any, volume: Any) -> None:
     """The equations that fix the extents of a bed without a rate law at its outlet `point`."""
     path = f"reactor.{step.name}"
     if step.approach_temperature is not None:
@@ -93,7 +93,9 @@ def close_by_factor(
             block, "factor", "ratio", f"{path}.approach_fraction", step.approach_fraction, "fraction"
         )
     else:
-        factor = frame.define(block, "factor", "ratio", _damkohler_factor(block, inlet, volume), 0.0, 1.0, 0.9)
+        factor = frame.define(
+            block, "factor", "ratio", _damkohler_factor(block, inlet, volume), 0.0, 1.0, 0.9
+        )
         frame.report(f"{path}.approach_fraction", "fraction", factor)
     for reaction, extent, limit in zip(frame.chemistry.reactions, point.extents, most, strict=True):
         frame.equation(block, f"extent_of_{reaction.name}", extent - factor * limit == 0, frame.flow)

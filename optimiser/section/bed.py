@@ -44,9 +44,14 @@ def _geometry(frame: Frame, block: Any, step: BedStep) -> tuple[Any, Any, Any]:
         diameter = frame.decision(block, "diameter", "length", f"{path}.diameter", step.diameter, "length")
     else:
         slender = step.length_over_diameter
-        ratio = frame.decision(block, "slenderness", "ratio", f"{path}.length_over_diameter", slender, "ratio")
+        assert slender is not None
+        ratio = frame.decision(
+            block, "slenderness", "ratio", f"{path}.length_over_diameter", slender, "ratio"
+        )
         diameter = frame.variable(block, "diameter", "length", 0.05, 20.0, start=2.0)
-        frame.equation(block, "slenderness_is", PI / 4 * diameter * diameter * diameter * ratio - volume == 0, 10.0)
+        frame.equation(
+            block, "slenderness_is", PI / 4 * diameter * diameter * diameter * ratio - volume == 0, 10.0
+        )
         frame.report(f"{path}.diameter", "length", diameter)
     length = frame.define(block, "length", "length", 4.0 * volume / (PI * diameter * diameter), low=0.01)
     frame.report(f"{path}.length", "length", length)
@@ -105,7 +110,9 @@ def _point(frame: Frame, block: Any, inlet: Gas, sizes: tuple[Any, Any, Any]) ->
     gradient = ergun_gradient(
         flux, phase.density, catalyst.viscosity(temperature), catalyst.pellet_diameter, catalyst.void
     )
-    fall = frame.define(block, "fall", "gradient", 2.0 * pressure / frame.nominal("pressure") * gradient, low=0.0)
+    fall = frame.define(
+        block, "fall", "gradient", 2.0 * pressure / frame.nominal("pressure") * gradient, low=0.0
+    )
     return Point(extents, temperature, pressure, phase, [], fall)
 
 
@@ -183,7 +190,9 @@ def build_factor_points(
     fall = (point.pressure * point.pressure - inlet.pressure * inlet.pressure) / unit**2
     # The gradient is that of the outlet; a bed that is fitted to its rate law is fitted in this too.
     block.fall_share = Param(mutable=True, initialize=1.0)
-    frame.equation(block.outlet_point, "pressure_fall", fall + block.fall_share * sizes[1] * point.fall / unit == 0)
+    frame.equation(
+        block.outlet_point, "pressure_fall", fall + block.fall_share * sizes[1] * point.fall / unit == 0
+    )
     close_by_factor(frame, block, step, inlet, point, sizes[0])
     return [point]
 

@@ -62,15 +62,13 @@ def build_section(case: Case, chemistry: Chemistry, equipment: Equipment) -> Sec
     pressure = frame.decision(loop, "pressure", "pressure", "loop.pressure", case.loop.pressure, "pressure")
     makeup = build_makeup(frame)
     compressed = build_compression(frame, makeup, pressure)
-    feed = [
-        frame.variable(loop, f"feed_{name}", "flow", 1e-9 * frame.flow) for name in frame.mixture.names
-    ]
+    feed = [frame.variable(loop, f"feed_{name}", "flow", 1e-9 * frame.flow) for name in frame.mixture.names]
     heat = frame.variable(loop, "feed_enthalpy", "heat")
     bed_pressure = frame.define(
         loop, "bed_pressure", "pressure", pressure - case.loop.feed_pressure_drop.si, low=1e3
     )
     reactor = build_reactor(frame, feed, heat, bed_pressure)
-    train = build_train(frame, reactor.outlet, reactor.beds[-1].outlet.flows)
+    train = build_train(frame, reactor.outlet, list(reactor.beds[-1].outlet.flows))
     power, circulated = build_circulator(frame, train.recycle, pressure)
     for name, n, fresh, back in zip(
         frame.mixture.names, feed, makeup.flows, train.recycle.flows, strict=True
@@ -84,8 +82,7 @@ def build_section(case: Case, chemistry: Chemistry, equipment: Equipment) -> Sec
     total = build_costs(frame, inventory)
     _approaches(frame, reactor)
     _limits(frame)
-    section = SectionModel(frame, reactor, _objective(frame, inventory, total))
-    return section
+    return SectionModel(frame, reactor, _objective(frame, inventory, total))
 
 
 def _report_loop(frame: Frame, makeup: MakeUp, reactor: Reactor, train: Train, feed: list[Any]) -> None:
@@ -172,11 +169,17 @@ def _objective(frame: Frame, inventory: Inventory, total: Any) -> str:
     elif case.objective == "levelised cost":
         model.objective = Objective(expr=total / annual, sense=minimize)
     elif case.objective == "annual profit":
-        model.objective = Objective(expr=annual * case.prices.product.si - total, sense=maximize)
+        model.objective = Objective(expr=annual * _product_price(case) - total, sense=maximize)
         model.scaling_factor[model.objective] = 1.0 / frame.nominal("money")
     else:
         model.objective = Objective(expr=frame.reported["product.yield"].variables[0], sense=maximize)
     return "maximise" if model.objective.sense == maximize else "minimise"
+
+
+def _product_price(case: Case) -> float:
+    """Money for a kilogram of product; the reader has seen to it that it is stated."""
+    assert case.prices.product is not None
+    return case.prices.product.si
 
 
 __all__ = ["Flash", "SectionModel", "StreamRecord", "build_section", "nominal_flow"]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import functools
+from itertools import pairwise
 
 import numpy as np
 
@@ -22,7 +23,7 @@ def point_positions(elements: int) -> list[float]:
     """Where the collocation points of a bed lie, as parts of its volume; length 3 * elements, the last is 1."""
     edges = element_edges(elements)
     return [
-        low + (high - low) * t for low, high in zip(edges[:-1], edges[1:], strict=True) for t in RADAU_POINTS
+        low + (high - low) * t for low, high in pairwise(edges) for t in RADAU_POINTS
     ]
 
 

@@ -18,6 +18,7 @@ class Compressed:
 
     Attributes:
         molar_enthalpy: J/mol.
+        names: of the stages, as paths.
         powers: electric power of each stage, W.
         duties: heat into cooling water of each intercooler, W.
         areas: area of each intercooler, m2; `pressures` their design basis, Pa.
@@ -25,13 +26,16 @@ class Compressed:
 
     molar_enthalpy: Any
     temperature: float
+    names: list[str]
     powers: list[Any]
     duties: list[Any]
     areas: list[Any]
     pressures: list[Any]
 
 
-def _molar_state(frame: Frame, block: Any, name: str, fractions: list[Any], temperature: Any, pressure: Any) -> Phase:
+def _molar_state(
+    frame: Frame, block: Any, name: str, fractions: list[Any], temperature: Any, pressure: Any
+) -> Phase:
     root = frame.variable(block, f"{name}_compressibility", "ratio", 0.2, 3.0, start=1.03)
     phase = frame.mixture.phase(temperature, pressure, fractions, root)
     frame.give(root, frame.equation(block, f"{name}_state", phase.residual == 0))
@@ -43,7 +47,7 @@ def build_compression(frame: Frame, makeup: MakeUp, loop_pressure: Any) -> Compr
     plant = frame.case.compression
     cooled = plant.intercooler_temperature.si
     drop = plant.intercooler_pressure_drop.si
-    result = Compressed(None, cooled, [], [], [], [])
+    result = Compressed(None, cooled, [], [], [], [], [])
     entry = frame.block("compression_entry")
     temperature: Any = makeup.temperature
     if temperature is None:
@@ -60,7 +64,9 @@ def build_compression(frame: Frame, makeup: MakeUp, loop_pressure: Any) -> Compr
             discharge = loop_pressure + drop
         else:
             path = f"compression.{stage.name}.discharge_pressure"
-            discharge = frame.decision(block, "discharge", "pressure", path, stage.discharge_pressure, "pressure")
+            discharge = frame.decision(
+                block, "discharge", "pressure", path, stage.discharge_pressure, "pressure"
+            )
         name = f"compression.{stage.name}"
         frame.stream(f"{name}.in", makeup.flows, temperature, pressure)
         inlet = _stage(frame, block, name, makeup, inlet, (temperature, pressure, discharge), result)
@@ -83,7 +89,7 @@ def _stage(
 ) -> Phase:
     """One stage and its intercooler; returns the cooled gas."""
     plant, fractions = frame.case.compression, makeup.fractions
-    temperature_in, pressure_in, discharge = state
+    _, pressure_in, discharge = state
     cooled, water = plant.intercooler_temperature.si, frame.case.utilities
     ratio = frame.define(block, "ratio", "ratio", discharge / pressure_in, low=1.0, high=20.0, start=2.0)
     frame.report(f"{name}.ratio", "ratio", ratio)
@@ -108,14 +114,21 @@ def _stage(
     frame.stream(f"{name}.out", makeup.flows, out, discharge)
     power = frame.define(block, "power", "heat", makeup.flow * work / plant.driver_efficiency.si, low=0.0)
     frame.report(f"{name}.power", "power", power)
-    cold = _molar_state(frame, block, "cooled", fractions, cooled, discharge - plant.intercooler_pressure_drop.si)
-    duty = frame.define(block, "intercooler_duty", "heat", makeup.flow * (gas.enthalpy - cold.enthalpy), low=0.0)
+    cold = _molar_state(
+        frame, block, "cooled", fractions, cooled, discharge - plant.intercooler_pressure_drop.si
+    )
+    duty = frame.define(
+        block, "intercooler_duty", "heat", makeup.flow * (gas.enthalpy - cold.enthalpy), low=0.0
+    )
     frame.report(f"{name}.intercooler_duty", "power", duty)
-    hot_end = frame.define(block, "hot_end", "difference", out - water.cooling_water_return.si, low=1.0, start=100.0)
+    hot_end = frame.define(
+        block, "hot_end", "difference", out - water.cooling_water_return.si, low=1.0, start=100.0
+    )
     mean = log_mean(hot_end, cooled - water.cooling_water_supply.si)
     coefficient = exchanger_coefficient(plant.coefficient.si, discharge)
     area = frame.define(block, "intercooler_area", "area", duty / (coefficient * mean), low=0.0)
     frame.report(f"{name}.intercooler_area", "area", area)
+    result.names.append(name)
     result.powers.append(power)
     result.duties.append(duty)
     result.areas.append(area)
@@ -145,7 +158,11 @@ def build_circulator(frame: Frame, inlet: Gas, loop_pressure: Any) -> tuple[Any,
     frame.give(out, frame.equation(block, "balance", heating, frame.nominal("heat")))
     power = frame.define(block, "power", "heat", work / driver, low=0.0)
     frame.report("loop.circulator_power", "power", power)
-    frame.report("loop.pressure_drop", "pressure", frame.define(block, "head", "pressure", loop_pressure - inlet.pressure))
+    frame.report(
+        "loop.pressure_drop",
+        "pressure",
+        frame.define(block, "head", "pressure", loop_pressure - inlet.pressure),
+    )
     frame.stream("circulator.in", inlet.flows, inlet.temperature, inlet.pressure)
     frame.stream("circulator.out", inlet.flows, out, loop_pressure)
     return power, gas.enthalpy

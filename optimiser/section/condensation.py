@@ -141,6 +141,7 @@ def _duty(frame: Frame, train: Train, name: str, hot: Any, cold: Flash, separato
 def _refrigeration(frame: Frame, block: Any, train: Train, duty: Any, evaporating: Any) -> None:
     """Work of the machine between its evaporating and condensing temperatures, and its condenser."""
     plant, water = frame.case.condensation.chiller, frame.case.utilities
+    assert plant is not None
     condensing = water.cooling_water_return.si + plant.condenser_approach.si
     work = refrigeration_work(duty, evaporating, condensing, plant.second_law_efficiency.si)
     power = frame.define(block, "power", "heat", work / frame.case.compression.driver_efficiency.si, low=0.0)
@@ -148,7 +149,9 @@ def _refrigeration(frame: Frame, block: Any, train: Train, duty: Any, evaporatin
     rejected = frame.define(block, "rejected", "heat", duty + work, low=0.0)
     train.power = power
     train.water_duties.append(rejected)
-    train.condenser_area = frame.define(block, "condenser_area", "area", rejected / _condenser_basis(frame), low=0.0)
+    train.condenser_area = frame.define(
+        block, "condenser_area", "area", rejected / _condenser_basis(frame), low=0.0
+    )
 
 
 def _condenser_basis(frame: Frame) -> float:
@@ -156,6 +159,7 @@ def _condenser_basis(frame: Frame) -> float:
     from optimiser.engineering.heat import log_mean
 
     plant, water = frame.case.condensation.chiller, frame.case.utilities
+    assert plant is not None
     rise = water.cooling_water_return.si - water.cooling_water_supply.si
     mean = log_mean(plant.condenser_approach.si, plant.condenser_approach.si + rise)
     return float(plant.condenser_coefficient.si * mean)

@@ -48,13 +48,13 @@ def build_costs(frame: Frame, inventory: Inventory) -> Any:
     """All items and their total, money a year."""
     capital = _capital(frame, inventory)
     items = _operating(frame, inventory) | _fixed(frame, capital)
-    credits = _credits(frame, inventory)
+    earned = _credits(frame, inventory)
     block = frame.block("costs")
-    shown = {name: frame.define(block, name, "money", item) for name, item in (items | credits).items()}
+    shown = {name: frame.define(block, name, "money", item) for name, item in (items | earned).items()}
     for name, variable in shown.items():
         frame.report(f"costs.{name}", "money_per_year", variable)
     total = frame.define(
-        block, "total", "money", sum(shown[n] for n in items) - sum(shown[n] for n in credits), start=1e8
+        block, "total", "money", sum(shown[n] for n in items) - sum(shown[n] for n in earned), start=1e8
     )
     frame.report("costs.total", "money_per_year", total)
     unit = frame.define(block, "unit_cost", "ratio", total / (inventory.product * _year(frame)))
@@ -154,7 +154,7 @@ def _capital(frame: Frame, inventory: Inventory) -> Any:
     block, basis = frame.block("capital"), cost_basis(frame)
     total: Any = 0.0
     for name, asset in _assets(frame, inventory, basis).items():
-        quote = frame.case.economics.quoted.get(name)
+        quote = next((q for kind, q in frame.case.economics.quoted.items() if kind == name), None)
         cost = sum(asset.parts)
         if quote is not None:
             index = frame.equipment.cost_index(quote.year)
@@ -173,20 +173,28 @@ def _assets(frame: Frame, inventory: Inventory, basis: CostBasis) -> dict[str, _
     machine = _Buyer(frame, basis)
     assets = {
         "compressors": _Asset(
-            [machine.compressor(f"stage_{k}", p, driver) for k, p in enumerate(compressed.powers)],
+            [
+                machine.compressor(name, power, driver)
+                for name, power in zip(compressed.names, compressed.powers, strict=True)
+            ],
             sum(compressed.powers),
         ),
-        "circulator": _Asset([machine.compressor("circulator", inventory.circulator, driver)], inventory.circulator),
+        "circulator": _Asset(
+            [machine.compressor("circulator", inventory.circulator, driver)], inventory.circulator
+        ),
         "exchangers": _exchangers(machine, inventory),
         "converter": _Asset(
-            [machine.vessel(bed.name, bed.diameter, bed.length, inventory.pressure) for bed in inventory.reactor.beds],
+            [
+                machine.vessel(bed.name, bed.diameter, bed.length, inventory.pressure)
+                for bed in inventory.reactor.beds
+            ],
             frame.reported["reactor.catalyst_volume"].variables[0],
         ),
         "separator": _separator(machine, train),
     }
     if frame.case.condensation.chiller is not None:
         cost = machine.compressor("refrigeration", train.power, driver)
-        condenser = machine.exchanger("refrigeration_condenser", "water_cooled", train.condenser_area, None)
+        condenser = machine.exchanger("refrigeration condenser", "water_cooled", train.condenser_area, None)
         assets["refrigeration"] = _Asset([cost, condenser], train.power)
     return assets
 
@@ -199,8 +207,8 @@ def _exchangers(machine: _Buyer, inventory: Inventory) -> _Asset:
         bought.append(machine.exchanger(exchanger.path, exchanger.use, exchanger.area, exchanger.pressure))
         areas.append(exchanger.area)
     compressed = inventory.compressed
-    for k, (area, pressure) in enumerate(zip(compressed.areas, compressed.pressures, strict=True)):
-        bought.append(machine.exchanger(f"intercooler_{k}", "water_cooled", area, pressure))
+    for name, area, pressure in zip(compressed.names, compressed.areas, compressed.pressures, strict=True):
+        bought.append(machine.exchanger(f"{name} intercooler", "water_cooled", area, pressure))
         areas.append(area)
     return _Asset(bought, sum(areas))
 
@@ -211,7 +219,9 @@ def _separator(machine: _Buyer, train: Train) -> _Asset:
     volume = separator_volume(diameter, slender)
     size = machine.frame.define(machine.frame.block("separator_size"), "volume", "volume", volume)
     machine.frame.report("condensation.separator.volume", "volume", size)
-    return _Asset([machine.vessel("separator", diameter, slender * diameter, train.separator.pressure, 1.0)], size)
+    return _Asset(
+        [machine.vessel("separator", diameter, slender * diameter, train.separator.pressure, 1.0)], size
+    )
 
 
 @dataclass
@@ -233,7 +243,9 @@ class _Buyer:
 
     def compressor(self, name: str, power: Any, driver_efficiency: float) -> Any:
         """Machine by its shaft power and drive by its electric power."""
-        return self._buy(name, "compressor", power * driver_efficiency) + self._buy(f"{name}_drive", "drive", power)
+        return self._buy(name, "compressor", power * driver_efficiency) + self._buy(
+            f"{name} drive", "drive", power
+        )
 
     def exchanger(self, path: str, use: str, area: Any, pressure: Any) -> Any:
         """Exchanger by area and by the pressure of the loop gas in it."""
@@ -245,7 +257,11 @@ class _Buyer:
         block = self.frame.block(f"shell_of_{name}")
         design = case.design_pressure_factor.si * pressure - ATMOSPHERE
         wall = wall_thickness(
-            design, diameter / 2.0, case.allowable_stress.si, case.joint_efficiency.si, case.corrosion_allowance.si
+            design,
+            diameter / 2.0,
+            case.allowable_stress.si,
+            case.joint_efficiency.si,
+            case.corrosion_allowance.si,
         )
         stretched = (case.length_factor.si if slack is None else slack) * length
         mass = shell_mass(diameter, stretched, wall, case.steel_density.si)

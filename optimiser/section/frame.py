@@ -6,6 +6,7 @@ solver sees numbers of order one.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 from typing import Any
@@ -120,7 +121,7 @@ class Frame:
     def block(self, name: str) -> Block:
         """A new block named by path; dots become underscores in the Pyomo name."""
         block = Block(concrete=True)
-        self.model.add_component(name.replace(".", "_").replace("-", "_"), block)
+        self.model.add_component(re.sub(r"[.\- ]", "_", name), block)
         return block
 
     def variable(
@@ -167,7 +168,9 @@ class Frame:
         """Tell which equation gives a variable when a start is completed."""
         self.definitions.append((variable, constraint))
 
-    def decision(self, block: Block, name: str, kind: str, path: str, setting: Setting, dimension: str) -> Any:
+    def decision(
+        self, block: Block, name: str, kind: str, path: str, setting: Setting, dimension: str
+    ) -> Any:
         """A variable that the case holds or frees."""
         variable = self.variable(block, name, kind, start=setting.low)
         self.decisions[path] = (variable, setting)
@@ -208,7 +211,9 @@ class Frame:
         """Make a quantity known under a result path."""
         self.reported[path] = Reported(path, dimension, variables, pick)
 
-    def stream(self, name: str, vapour: Sequence[Any], temperature: Any, pressure: Any, liquid: Any = None) -> None:
+    def stream(
+        self, name: str, vapour: Sequence[Any], temperature: Any, pressure: Any, liquid: Any = None
+    ) -> None:
         """Make a stream known under a name."""
         self.streams[name] = StreamRecord(vapour, liquid, temperature, pressure)
 
@@ -232,7 +237,9 @@ class Gas:
     enthalpy: Any
 
 
-def gas_at(frame: Frame, block: Block, name: str, flows: Sequence[Any], temperature: Any, pressure: Any) -> Gas:
+def gas_at(
+    frame: Frame, block: Block, name: str, flows: Sequence[Any], temperature: Any, pressure: Any
+) -> Gas:
     """A gas state with its compressibility and enthalpy as variables; `temperature` may be a number or a variable."""
     root = frame.variable(block, f"{name}_compressibility", "ratio", 0.2, 3.0, start=1.03)
     phase = frame.mixture.phase(temperature, pressure, flows, root)

@@ -58,7 +58,7 @@ def _shares(frame: Frame, block: Any, total: Any) -> dict[str, Any]:
     """Molar share of each stream: stated, following from stated flows, or the remainder."""
     streams = frame.case.feed.streams
     if len(streams) == 1:
-        return {name: 1.0 for name in streams}
+        return dict.fromkeys(streams, 1.0)
     shares: dict[str, Any] = {}
     for name, stream in streams.items():
         if stream.share is not None:

@@ -101,7 +101,7 @@ def _cool(
         temperature = temperature_at(frame, block, "outlet")
     outlet: Gas | Flash
     if after_beds and step.sink != "steam":
-        outlet = build_flash(frame, f"{path}.out", block, gas.flows, temperature, pressure, may_be_hot=True)
+        outlet = build_flash(frame, f"{path}.out", block, gas.flows, temperature, pressure)
     else:
         outlet = gas_at(frame, block, "outlet", gas.flows, temperature, pressure)
         frame.stream(f"{path}.out", gas.flows, temperature, pressure)
@@ -142,9 +142,7 @@ def _cold_sides(
         temperature = warm
 
 
-def _feed_after(
-    frame: Frame, record: _Cooled, enthalpy: Any, heated: Gas, *, last: bool
-) -> tuple[Any, Any]:
+def _feed_after(frame: Frame, record: _Cooled, enthalpy: Any, heated: Gas, *, last: bool) -> tuple[Any, Any]:
     """Temperature and enthalpy of the feed after one exchanger; after the last it is the first bed's inlet."""
     block = frame.block(f"feed_after_{record.step.name}")
     if last:

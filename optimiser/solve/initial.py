@@ -24,7 +24,9 @@ class Completion:
         columns = {id(v): k for k, v in enumerate(nlp.variables)}
         rows = {id(c): k for k, c in enumerate(nlp.constraints)}
         known = [(columns[id(v)], rows[id(c)]) for v, c in pairs if id(v) in columns and id(c) in rows]
-        positions = {(r, c): k for k, (r, c) in enumerate(zip(nlp.jacobian_rows, nlp.jacobian_columns, strict=True))}
+        positions = {
+            (r, c): k for k, (r, c) in enumerate(zip(nlp.jacobian_rows, nlp.jacobian_columns, strict=True))
+        }
         known = [(c, r) for c, r in known if (r, c) in positions]
         self._nlp = nlp
         self._columns = np.array([c for c, _ in known], dtype=int)

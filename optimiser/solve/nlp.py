@@ -11,7 +11,7 @@ from collections.abc import Iterable
 from typing import Any
 
 import numpy as np
-from pyomo.core import Block, Constraint, ConcreteModel, Objective, Var, minimize, value
+from pyomo.core import Block, ConcreteModel, Constraint, Objective, minimize, value
 
 from optimiser.solve.shapes import Floats, Shape
 from optimiser.solve.tape import Tape, TapeWriter
@@ -69,7 +69,9 @@ class Nlp:
             Shape(
                 [tape for tape, _ in group],
                 np.array([[self._index[id(v)] for v in tape.variables] for tape, _ in group], dtype=np.int64),
-                np.array([[r if r >= 0 else objective_row for r in rows] for _, rows in group], dtype=np.int64),
+                np.array(
+                    [[r if r >= 0 else objective_row for r in rows] for _, rows in group], dtype=np.int64
+                ),
             )
             for group in groups.values()
         ]
@@ -120,7 +122,7 @@ class Nlp:
     def start(self) -> Floats:
         """The model's present values, moved inside the bounds."""
         x = np.array([v.value if v.value is not None else np.nan for v in self.variables]) * self.factor
-        return np.clip(x, self.low, self.high)
+        return np.asarray(np.clip(x, self.low, self.high))
 
     def evaluate(self, x: Floats) -> tuple[float, Floats]:
         """Objective and constraints."""
@@ -140,7 +142,7 @@ class Nlp:
 
     def jacobian(self, x: Floats) -> Floats:
         """Nonzeros at (`jacobian_rows`, `jacobian_columns`)."""
-        return self._first(x)[~self._is_objective]
+        return np.asarray(self._first(x)[~self._is_objective])
 
     def gradient(self, x: Floats) -> Floats:
         """Gradient of the objective."""
@@ -153,7 +155,7 @@ class Nlp:
         model_x = x / self.factor
         weights = np.concatenate([multipliers, [objective_factor]]) * self.row_factor
         nonzeros = np.concatenate([shape.hessian(model_x, weights) for shape in self.shapes])
-        return nonzeros * self._hessian_scale
+        return np.asarray(nonzeros * self._hessian_scale)
 
     def load(self, x: Floats) -> None:
         """Write a point into the model's variables."""

@@ -28,8 +28,8 @@ class _Call:
         self.inputs = [np.zeros((copies, mapped.size1_in(k))) for k in range(mapped.n_in())]
         self.output = np.zeros((copies, function.nnz_out(0)))
         for k, array in enumerate(self.inputs):
-            self._buffer.set_arg(k, memoryview(array))
-        self._buffer.set_res(0, memoryview(self.output))
+            self._buffer.set_arg(k, memoryview(array.data))
+        self._buffer.set_res(0, memoryview(self.output.data))
 
     def __call__(self) -> Floats:
         self._evaluate()

@@ -98,9 +98,7 @@ def _changed_species(**changes: dict[str, float]):
     right = chemistry_of()
     species = tuple(replace(s, **changes.get(s.name, {})) for s in right.mixture.species)
     mixture = type(right.mixture)(species, right.mixture._vapour, right.mixture._liquid)
-    return replace(
-        right, mixture=mixture, reactions=tuple(replace(r, species=species) for r in right.reactions)
-    )
+    return replace(right, mixture=mixture, reactions=tuple(replace(r, species=species) for r in right.reactions))
 
 
 def test_a_wrong_enthalpy_is_caught(plant) -> None:
@@ -229,9 +227,7 @@ def test_every_stream_is_compared(plant, name: str) -> None:
     stream = plant.point.streams[name]
     warm = _with_stream(plant.point, name, temperature=stream.temperature + 0.15)
     assert f"stream {name}: temperature" in _failed(plant, warm)
-    less = _with_stream(
-        plant.point, name, vapour=stream.vapour * np.array([1.0, 1.0 - 2.0 * RELATIVE, 1.0, 1.0, 1.0])
-    )
+    less = _with_stream(plant.point, name, vapour=stream.vapour * np.array([1.0, 1.0 - 2.0 * RELATIVE, 1.0, 1.0, 1.0]))
     assert f"stream {name}: flow of N2" in _failed(plant, less)
     low = _with_stream(plant.point, name, pressure=stream.pressure * (1.0 - 2.0 * RELATIVE))
     assert f"stream {name}: pressure" in _failed(plant, low)
@@ -245,9 +241,7 @@ def test_every_stream_is_compared(plant, name: str) -> None:
         ("loop.recycle_ratio", -1.0, 0.001, 0.01),
     ],
 )
-def test_limits_hold_within_what_is_allowed(
-    plant, path: str, room: float, within: float, beyond: float
-) -> None:
+def test_limits_hold_within_what_is_allowed(plant, path: str, room: float, within: float, beyond: float) -> None:
     """An upper end below the value, or a lower end above it (`room`), by so much."""
     value = plant.walk.quantities[path]
     for distance, holds in ((within, True), (beyond, False)):
@@ -269,9 +263,7 @@ def test_what_cannot_be_compared_fails(plant) -> None:
     unknown = _with_quantity(plant.point, "reactor.bed1.colour", 3.0)
     assert _failed(plant, unknown) == ["reactor.bed1.colour is reported, but the audit does not compute it"]
     streams = {**plant.point.streams, "drain": plant.point.streams["purge"]}
-    assert any(
-        "stream drain is reported" in what for what in _failed(plant, replace(plant.point, streams=streams))
-    )
+    assert any("stream drain is reported" in what for what in _failed(plant, replace(plant.point, streams=streams)))
     limited = replace(plant.point, limits={"reactor.bed1.colour": (1.0, None)})
     assert any("limits.reactor.bed1.colour" in what for what in _failed(plant, limited))
     empty = _with_quantity(plant.point, "costs.total", float("nan"))

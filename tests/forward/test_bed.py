@@ -21,9 +21,7 @@ def _size(volume: float, diameter: float) -> BedSize:
     return BedSize(volume, diameter, 4.0 * volume / (np.pi * diameter**2))
 
 
-def _by_scipy(
-    chemistry, size: BedSize, temperature: float, pressure: float, activity: float
-) -> tuple[float, ...]:
+def _by_scipy(chemistry, size: BedSize, temperature: float, pressure: float, activity: float) -> tuple[float, ...]:
     """Extent, temperature and pressure at the outlet, and the temperature half-way.
 
     Radau's method on extent and pressure alone; the temperature is the root of the enthalpy balance at every
@@ -36,18 +34,14 @@ def _by_scipy(
 
     def warm(extent: float, p: float) -> float:
         flows = (FLOWS + nu * extent).tolist()
-        return float(
-            brentq(lambda t: mixture.gas(t, p, flows).enthalpy - heat, 500.0, 1000.0, xtol=1e-11, rtol=1e-13)
-        )
+        return float(brentq(lambda t: mixture.gas(t, p, flows).enthalpy - heat, 500.0, 1000.0, xtol=1e-11, rtol=1e-13))
 
     def slope(_: float, state: np.ndarray) -> list[float]:
         extent, p = state
         t = warm(extent, p)
         phase = mixture.gas(t, p, (FLOWS + nu * extent).tolist())
         rate = float(chemistry.rates(phase, t, p, activity)[0])
-        fall = ergun_gradient(
-            flux, phase.density, catalyst.viscosity(t), catalyst.pellet_diameter, catalyst.void
-        )
+        fall = ergun_gradient(flux, phase.density, catalyst.viscosity(t), catalyst.pellet_diameter, catalyst.void)
         return [rate, -fall / size.section]
 
     half = 0.5 * size.volume
@@ -131,10 +125,7 @@ def test_pressure_drop_is_near_ergun_of_the_mean_state(beds, inlet, chemistry) -
     size = _size(15.0, 2.2)
     profile = beds.integrate("bed", inlet, size, 0.7)
     catalyst, mixture = chemistry.catalyst, chemistry.mixture
-    ends = [
-        mixture.gas(s.temperature, s.pressure, s.vapour.tolist()).density
-        for s in (profile.inlet, profile.outlet)
-    ]
+    ends = [mixture.gas(s.temperature, s.pressure, s.vapour.tolist()).density for s in (profile.inlet, profile.outlet)]
     flux = float(FLOWS @ np.array(mixture.molar_mass)) / size.section
     mean = 0.5 * (inlet.temperature + profile.outlet.temperature)
     viscosity = catalyst.viscosity(mean)

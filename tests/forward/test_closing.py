@@ -121,9 +121,7 @@ def test_two_feed_streams_in_a_ratio_short_of_hydrogen(chemistry) -> None:
     section = Section(case, chemistry, load_equipment())
     walk = closed(section, middle(case))
     feed = walk.streams["converter_feed"].flows
-    assert walk.quantities["feed.streams.hydrogen.flow"] / walk.quantities["feed.flow"] == pytest.approx(
-        0.746
-    )
+    assert walk.quantities["feed.streams.hydrogen.flow"] / walk.quantities["feed.flow"] == pytest.approx(0.746)
     assert feed[H2] / feed[N2] < 2.9
     assert np.abs(walk.tear_error).max() < 1e-6 * walk.recycle.total
 
@@ -213,8 +211,8 @@ def test_mixing_solves_a_slow_linear_iteration() -> None:
 
 def test_the_case_forbids_what_it_states(plant) -> None:
     limits = case_limits(plant.section.case)
-    assert limits["reactor.bed1.hottest"] == (None, pytest.approx(798.15))
-    assert limits["loop.pressure"] == (80e5, 250e5)
+    assert limits["reactor.bed1.hottest"] == (None, plant.section.case.limits["reactor.bed1.hottest"].high)
+    assert limits["loop.pressure"] == (80e5, plant.section.case.loop.pressure.high)
     assert limits["reactor.preheat.approach"] == (15.0, None)
     assert limits["condensation.cold_exchanger.approach"] == (5.0, None)
     tightened = case_limits(prepared("limits.loop.pressure=<= 200 bar").case)
@@ -233,18 +231,14 @@ def test_a_kinetic_bed_is_that_of_the_loop(plant) -> None:
 
 def test_a_damkohler_bed_is_kinetic_until_it_is_fitted(plant, chemistry) -> None:
     bed = "  - bed: bed3\n"
-    section = Section(
-        parse_case(TEXT.replace(bed, f"{bed}    rate: damkohler\n")), chemistry, load_equipment()
-    )
+    section = Section(parse_case(TEXT.replace(bed, f"{bed}    rate: damkohler\n")), chemistry, load_equipment())
     same = section.walk(plant.setpoints, plant.walk.makeup, plant.walk.recycle)
     assert same.quantities["costs.total"] == pytest.approx(plant.walk.quantities["costs.total"], rel=1e-9)
     fitted = section.walk(
         plant.setpoints, plant.walk.makeup, plant.walk.recycle, damkohler={"bed3": (5.0, 1.0, 1.5, 1e4)}
     )
     assert fitted.beds["bed3"].positions.tolist() == [1.0]
-    assert fitted.beds["bed3"].extents[-1, 0] != pytest.approx(
-        plant.walk.beds["bed3"].extents[-1, 0], rel=1e-3
-    )
+    assert fitted.beds["bed3"].extents[-1, 0] != pytest.approx(plant.walk.beds["bed3"].extents[-1, 0], rel=1e-3)
     assert audit(section, _point(plant)).passed
 
 

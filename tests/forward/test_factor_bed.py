@@ -80,9 +80,7 @@ def test_a_damkohler_bed_makes_that_part_of_equilibrium(beds, step, inlet, chemi
 
 
 @pytest.mark.parametrize("share", [1.0, 0.6])
-def test_pressure_falls_by_ergun_with_the_outlets_gradient(
-    beds, step, inlet, chemistry, share: float
-) -> None:
+def test_pressure_falls_by_ergun_with_the_outlets_gradient(beds, step, inlet, chemistry, share: float) -> None:
     stated = step.model_copy(update={"rate": "damkohler"})
     out = beds.solve(stated, inlet, SIZE, {}, (*COEFFICIENTS, share)).outlet
     catalyst, mixture = chemistry.catalyst, chemistry.mixture

@@ -8,8 +8,9 @@ from forward.plant import chemistry_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from optimiser.forward.flash import flash_ph, flash_tp, rachford_rice
+from optimiser.forward.flash import dew_point, flash_ph, flash_tp, rachford_rice
 from optimiser.forward.properties import Properties
+from optimiser.forward.stream import FlashFailure
 
 FLOWS = np.array([0.60, 0.20, 0.15, 0.02, 0.03]) * 6000.0
 H2, N2, NH3 = 0, 1, 2
@@ -148,3 +149,18 @@ def test_a_liquid_gives_off_what_it_cannot_hold(properties) -> None:
     assert phases.vapour[H2] > phases.liquid[H2]
     lean = np.array([0.004, 0.001, 0.995, 0.0, 0.0])
     assert flash_tp(properties, lean, 280.0, 3e7).vapour_fraction == 0.0
+
+
+@pytest.mark.parametrize("kind", ["srk", "ideal"])
+def test_the_dew_point_is_where_the_first_drop_forms(kind: str) -> None:
+    properties = Properties(chemistry_of(kind).mixture)
+    dew = dew_point(properties, FLOWS, 1.8e7)
+    colder = flash_tp(properties, FLOWS, dew.temperature - 0.05, 1.8e7)
+    assert colder.drops is not None
+    assert flash_tp(properties, FLOWS, dew.temperature + 0.05, 1.8e7).drops is None
+    assert dew.fractions == pytest.approx(colder.liquid / colder.liquid.sum(), rel=0.01)
+
+
+def test_a_gas_without_a_dew_point_says_so(properties) -> None:
+    with pytest.raises(FlashFailure, match="no liquid forms"):
+        dew_point(properties, np.array([0.75, 0.25, 0.0, 0.0, 0.0]), 1.8e7)

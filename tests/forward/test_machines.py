@@ -14,9 +14,7 @@ from optimiser.forward.properties import Properties
 from optimiser.forward.stream import SetpointFailure
 
 # CoolProp 8.0 and cantera 3.2, computed; see the file.
-FIGURES = tomllib.loads(
-    (Path(__file__).parents[1] / "reference" / "engineering.toml").read_text(encoding="utf-8")
-)
+FIGURES = tomllib.loads((Path(__file__).parents[1] / "reference" / "engineering.toml").read_text(encoding="utf-8"))
 MAKEUP, CIRCULATOR = (FIGURES["compressor"][f"real_gas_{name}"] for name in ("makeup", "circulator"))
 SYNGAS = np.array([0.75, 0.25, 0.0, 0.0, 0.0])
 
@@ -48,9 +46,7 @@ def test_work_of_the_makeup(kind: str, figure: str, allowed: float, row: int) ->
         assert outlet == pytest.approx(MAKEUP["outlet_temperature"][row], abs=3.0)
 
 
-@pytest.mark.parametrize(
-    ("kind", "figure", "allowed"), [("srk", "real_work", 0.02), ("ideal", "ideal_work", 0.002)]
-)
+@pytest.mark.parametrize(("kind", "figure", "allowed"), [("srk", "real_work", 0.02), ("ideal", "ideal_work", 0.002)])
 def test_work_of_the_circulator(kind: str, figure: str, allowed: float) -> None:
     properties = Properties(chemistry_of(kind).mixture)
     inlet = properties.gas(CIRCULATOR["inlet_temperature"], CIRCULATOR["inlet_pressure"], SYNGAS)
@@ -113,9 +109,7 @@ def test_feed_streams_mix_at_the_lowest_pressure_with_their_heat() -> None:
     cold = stream.model_copy(update={"temperature": stream.temperature.__class__(280.0, "K", "temperature")})
     high = cold.model_copy(update={"pressure": stream.pressure.__class__(60e5, "bar", "pressure")})
     feed = case.feed.model_copy(update={"streams": {"warm": stream, "high": high}})
-    mixed = mixed_makeup(
-        case.model_copy(update={"feed": feed}), section.properties, {"warm": 3.0, "high": 1.0}
-    )
+    mixed = mixed_makeup(case.model_copy(update={"feed": feed}), section.properties, {"warm": 3.0, "high": 1.0})
     assert mixed.pressure == 25e5
     fractions = np.array([stream.composition.get(n, 0.0) for n in section.chemistry.mixture.names])
     heat = section.properties.gas(308.15, 25e5, 3.0 * fractions).enthalpy

@@ -12,9 +12,9 @@ YEAR = 8000.0 * 3600.0
 
 
 def test_operating_costs_are_flows_times_prices(plant) -> None:
-    q = plant.walk.quantities
+    q, prices = plant.walk.quantities, plant.section.case.prices
     power = q["compression.power"] + q["loop.circulator_power"] + q["condensation.chiller.power"]
-    assert q["costs.electricity"] == pytest.approx(power * 0.065 / 3.6e6 * YEAR, rel=1e-9)
+    assert q["costs.electricity"] == pytest.approx(power * prices.electricity.si * YEAR, rel=1e-9)
     assert q["costs.feed"] == pytest.approx(q["feed.flow"] * 2e-3 * YEAR, rel=1e-9)
     assert q["costs.steam_credit"] == pytest.approx(q["reactor.boiler.duty"] * 0.012 / 3.6e6 * YEAR, rel=1e-9)
     assert q["costs.fuel_credit"] == pytest.approx(q["purge.heating_value"] * 0.018 / 3.6e6 * YEAR, rel=1e-9)
@@ -33,9 +33,7 @@ def test_cooling_water_takes_every_duty_that_water_takes(plant) -> None:
 def test_capital_becomes_annual_cost(plant) -> None:
     q = plant.walk.quantities
     growth = 1.08**20
-    assert q["costs.capital_recovery"] == pytest.approx(
-        q["capital.total"] * 0.08 * growth / (growth - 1.0), rel=1e-9
-    )
+    assert q["costs.capital_recovery"] == pytest.approx(q["capital.total"] * 0.08 * growth / (growth - 1.0), rel=1e-9)
     assert q["costs.maintenance"] == pytest.approx(0.03 * q["capital.total"], rel=1e-9)
     kinds = ("compressors", "circulator", "exchangers", "converter", "separator", "refrigeration")
     assert q["capital.total"] == pytest.approx(sum(q[f"capital.{k}"] for k in kinds))
@@ -67,6 +65,4 @@ def test_carbon_is_paid_for_what_burns_and_for_power(plant) -> None:
     power = q["compression.power"] + q["loop.circulator_power"] + q["condensation.chiller.power"]
     emitted = methane * 0.0440095 + power * 0.2 / 3.6e6
     assert q["costs.carbon"] == pytest.approx(emitted * 0.08 * YEAR, rel=1e-6)
-    assert q["costs.total"] == pytest.approx(
-        plant.walk.quantities["costs.total"] + q["costs.carbon"], rel=1e-9
-    )
+    assert q["costs.total"] == pytest.approx(plant.walk.quantities["costs.total"] + q["costs.carbon"], rel=1e-9)

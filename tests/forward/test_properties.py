@@ -92,9 +92,7 @@ def test_all_three_roots_are_found(wanted: tuple[float, float, float]) -> None:
     a, b, c = sorted(wanted)
     found = cubic_roots(-(a + b + c), a * b + b * c + c * a, -a * b * c)
     # Two roots that lie together are found to the root of round-off, or not told apart from none at all.
-    assert found[-1] == pytest.approx(c, abs=2e-4) or (
-        c - b < 1e-3 and found[0] == pytest.approx(a, abs=2e-4)
-    )
+    assert found[-1] == pytest.approx(c, abs=2e-4) or (c - b < 1e-3 and found[0] == pytest.approx(a, abs=2e-4))
     if min(b - a, c - b) > 1e-3:
         assert found == pytest.approx((a, b, c), abs=1e-9)
 

@@ -98,9 +98,7 @@ def test_water_takes_heat_after_the_boiler(chemistry) -> None:
     )
     _, walk = _walk(changed, chemistry)
     q = walk.quantities
-    assert q["costs.water_heat_credit"] == pytest.approx(
-        q["reactor.economiser.duty"] * 0.01 / 3.6e6 * 8000 * 3600
-    )
+    assert q["costs.water_heat_credit"] == pytest.approx(q["reactor.economiser.duty"] * 0.01 / 3.6e6 * 8000 * 3600)
     ends = (
         walk.streams["reactor.boiler.out"].temperature - (180 + 273.15),
         walk.streams["reactor.economiser.out"].temperature - (105 + 273.15),

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from pathlib import Path
+
 import casadi as ca
 import numpy as np
 import pyomo.environ as pe
@@ -24,7 +26,9 @@ def _model() -> pe.ConcreteModel:
     model.named = pe.Expression(expr=shared + model.p * model.x[0] ** 2)
     model.cells = pe.Block(range(3))
     for k in range(3):
-        model.cells[k].c = pe.Constraint(expr=(k + 1.5) * model.x[k] * pe.sqrt(model.x[k + 1]) - model.held == 0)
+        model.cells[k].c = pe.Constraint(
+            expr=(k + 1.5) * model.x[k] * pe.sqrt(model.x[k + 1]) - model.held == 0
+        )
     model.c = pe.Constraint(expr=model.named * shared - model.x[2] ** 0.5 / 3 + model.x[3] ** 3 <= 4.0)
     model.d = pe.Constraint(expr=(-1.0, sum(model.x[k] for k in range(4)) - 2 * model.x[1], 9.0))
     model.o = pe.Objective(expr=model.x[0] ** 1.5 * model.x[1] - model.named, sense=pe.maximize)
@@ -34,7 +38,7 @@ def _model() -> pe.ConcreteModel:
 def _oracle(model: pe.ConcreteModel, path: str) -> tuple[ca.NlpBuilder, list[str], list[str]]:
     from pyomo.repn.plugins.nl_writer import NLWriter
 
-    with open(path, "w") as stream:
+    with Path(path).open("w") as stream:
         info = NLWriter().write(
             model, stream, symbolic_solver_labels=False, linear_presolve=False, scale_model=False
         )
@@ -51,7 +55,9 @@ def test_values_and_derivatives_equal_those_of_the_nl_file(tmp_path) -> None:
     body, goal = ca.vertcat(*builder.g), builder.f
     weights = ca.MX.sym("w", body.numel())
     hessian = ca.hessian(goal + ca.dot(weights, body), x)[0]
-    oracle = ca.Function("oracle", [x, weights], [goal, body, ca.jacobian(body, x), ca.gradient(goal, x), hessian])
+    oracle = ca.Function(
+        "oracle", [x, weights], [goal, body, ca.jacobian(body, x), ca.gradient(goal, x), hessian]
+    )
     order = [names.index(v.name) for v in nlp.variables]
     row_order = [rows.index(c.name) for c in nlp.constraints]
     point = nlp.start()
