@@ -29,7 +29,7 @@ def _row(workshop: Workshop, bed: Any, units: Units, values: dict[str, float]) -
         "outlet_temperature": show("outlet_temperature", "temperature", number(bed.outlet.temperature)),
         "hottest": show("hottest", "temperature", values[f"{path}.hottest"]),
         "inlet_pressure": show("inlet_pressure", "pressure", number(bed.inlet.pressure)),
-        "pressure_drop": show("pressure_drop", "pressure", values[f"{path}.pressure_drop"]),
+        "pressure_drop": show("pressure_drop", "pressure_difference", values[f"{path}.pressure_drop"]),
         "volume": show("volume", "volume", number(bed.volume)),
         "length": show("length", "length", values[f"{path}.length"]),
         "diameter": show("diameter", "length", number(bed.diameter)),

@@ -20,7 +20,9 @@ def starting_setpoints(case: Case, count: int, seed: int) -> list[dict[str, floa
     settings = case.settings()
     free = [path for path, setting in settings.items() if not setting.held and not _is_stage(path)]
     held = {path: setting.value for path, setting in settings.items() if setting.held}
-    shares = [[0.5] * len(free), *(spread(max(count - 1, 1), max(len(free), 1), seed)).tolist()]
+    if not free:
+        count = 1  # Nothing to spread: the section is calculated, and one start is all there is.
+    shares = [[0.5] * len(free), *spread(max(count - 1, 1), max(len(free), 1), seed).tolist()]
     starts = []
     for share in shares[:count]:
         point = dict(held)

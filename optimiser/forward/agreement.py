@@ -134,12 +134,8 @@ class Comparison:
                 continue
             found, dimension = self.walk.quantities[path], self._dimension(path)
             for side, end, sign in zip(("low", "high"), ends, (-1.0, 1.0), strict=True):
-                if end is None:
-                    continue
-                thermal = dimension in ("temperature", "temperature_difference")
-                allowed = LIMIT if thermal else RELATIVE * abs(end)
-                passed_by = max(sign * (found - end), 0.0) if math.isfinite(found) else math.inf
-                yield AuditLine(f"limits.{path}.{side}", end, found, passed_by, allowed, dimension)
+                if end is not None:
+                    yield _held(f"limits.{path}.{side}", end, found, sign, dimension)
 
     def _largest(self) -> dict[str, float]:
         """Largest size of each kind of quantity that has something to be small beside: money, power, area."""
@@ -167,6 +163,15 @@ def _allowed(path: str, dimension: str, value: float) -> float:
     if dimension == "temperature_difference":
         return DIFFERENCE
     return RELATIVE * abs(value)
+
+
+def _held(what: str, end: float, found: float, sign: float, dimension: str) -> AuditLine:
+    """One end of a limit: an upper one (`sign` 1) or a lower one (-1)."""
+    if not math.isfinite(found):
+        return AuditLine(f"{what} limits what is not a number", 0.0, 0.0, 1.0, 0.0, "fraction")
+    thermal = dimension in ("temperature", "temperature_difference")
+    allowed = LIMIT if thermal else RELATIVE * abs(end)
+    return AuditLine(what, end, found, max(sign * (found - end), 0.0), allowed, dimension)
 
 
 def _unknown(what: str) -> AuditLine:

@@ -44,7 +44,7 @@ class BedStep(Section):
         reason="sized for the end of a run, not its start",
     )
     elements: Annotated[StrictInt, Field(ge=2, le=60)] = said(
-        5,
+        6,
         meaning="collocation elements along the bed",
         reason="outlets within 0.05 K, points inside within 1 K of a stiff integration",
     )

@@ -205,7 +205,7 @@ def _report(frame: Frame, block: Any, bed: Bed, inlet: Gas) -> None:
     frame.report(f"{path}.hottest", "temperature", inlet.temperature, *points)
     drop = frame.define(block, "pressure_drop", "pressure", inlet.pressure - bed.outlet.pressure)
     frame.model.scaling_factor[drop] = 1e-5
-    frame.report(f"{path}.pressure_drop", "pressure", drop)
+    frame.report(f"{path}.pressure_drop", "pressure_difference", drop)
     total = sum(bed.outlet.flows)
     names = frame.mixture.names
     made = sum(bed.outlet.flows[names.index(p)] for p in frame.chemistry.products)

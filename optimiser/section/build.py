@@ -104,7 +104,7 @@ def _report_loop(frame: Frame, makeup: MakeUp, reactor: Reactor, train: Train, f
     first, last = frame.streams[f"reactor.{reactor.beds[0].name}.in"], reactor.outlet.pressure
     drop = frame.define(block, "pressure_drop", "pressure", first.pressure - last)
     frame.model.scaling_factor[drop] = 1e-5
-    frame.report("reactor.pressure_drop", "pressure", drop)
+    frame.report("reactor.pressure_drop", "pressure_difference", drop)
     mixed = temperature_at(frame, block, "converter_feed")
     pressure = frame.decisions["loop.pressure"][0]
     root = frame.variable(block, "converter_feed_compressibility", "ratio", 0.2, 3.0, start=1.03)

@@ -160,7 +160,7 @@ def build_circulator(frame: Frame, inlet: Gas, loop_pressure: Any) -> tuple[Any,
     frame.report("loop.circulator_power", "power", power)
     frame.report(
         "loop.pressure_drop",
-        "pressure",
+        "pressure_difference",
         frame.define(block, "head", "pressure", loop_pressure - inlet.pressure),
     )
     frame.stream("circulator.in", inlet.flows, inlet.temperature, inlet.pressure)

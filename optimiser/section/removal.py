@@ -51,7 +51,7 @@ def build_flash(
     names = frame.mixture.names
     vapour = [frame.variable(block, f"vapour_{s}", "flow", 1e-9 * frame.flow) for s in names]
     fractions = [
-        frame.variable(block, f"liquid_fraction_{s}", "trace", _least(frame, s), 1.1, start=0.5)
+        frame.variable(block, f"liquid_fraction_{s}", "trace", _least(frame, s), 1.1, start=0.8)
         for s in names
     ]
     liquid_flow = frame.variable(block, "liquid_flow", "flow", 0.0)

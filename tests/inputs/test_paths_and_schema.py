@@ -73,7 +73,7 @@ def test_defaults_in_the_table_can_be_read(currency):
         ("compression.STAGE.discharge_pressure", "pressure", "", False),
         ("compression.intercooler_temperature", "temperature", "40 degC", False),
         ("reactor.BED.volume", "volume", "", True),
-        ("reactor.BED.elements", "", "5", False),
+        ("reactor.BED.elements", "", "6", False),
         ("reactor.COOLER.minimum_approach", "temperature_difference", "15 K", False),
         ("condensation.chiller.second_law_efficiency", "fraction", "50 %", False),
         ("limits.RESULT", "", "", False),
