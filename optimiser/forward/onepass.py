@@ -6,11 +6,11 @@ import numpy as np
 
 from optimiser.chemistry.reactions import Chemistry
 from optimiser.forward.bed import needed
-from optimiser.forward.flash import Dew, dew_point
 from optimiser.forward.machines import compress, compress_makeup, feed_flows, mixed_makeup
 from optimiser.forward.properties import Properties, State
 from optimiser.forward.reactor import BedRequest, ReactorWalk
 from optimiser.forward.report import Pieces
+from optimiser.forward.stability import Dew, dew_point
 from optimiser.forward.stream import Floats, SetpointFailure, Stream, gas_stream
 from optimiser.forward.train import cold_side, condense, part
 from optimiser.inputs.case import Case

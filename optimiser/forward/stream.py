@@ -18,7 +18,7 @@ from numpy.typing import NDArray
 
 if TYPE_CHECKING:
     from optimiser.chemistry.mixture import Mixture
-    from optimiser.forward.flash import Dew
+    from optimiser.forward.stability import Dew
 
 Floats = NDArray[np.float64]
 

@@ -82,6 +82,7 @@ class Section:
         Args:
             setpoints: SI by path; what the case holds need not be named.
             tolerance: relative, of the recycle of each species, of the make-up and of the separator's state.
+                The steps of the integrator leave noise of about ten times `bed_tolerance`, below which no loop closes.
             iterations: most passes to make.
             positions: as for `walk`.
             damkohler: as for `walk`.

@@ -8,8 +8,9 @@ from forward.plant import chemistry_of
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from optimiser.forward.flash import dew_point, flash_ph, flash_tp, rachford_rice
+from optimiser.forward.flash import flash_ph, flash_tp, rachford_rice
 from optimiser.forward.properties import Properties
+from optimiser.forward.stability import dew_point
 from optimiser.forward.stream import FlashFailure
 
 FLOWS = np.array([0.60, 0.20, 0.15, 0.02, 0.03]) * 6000.0

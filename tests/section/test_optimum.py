@@ -18,7 +18,8 @@ from optimiser.findings.audits import audit_point
 from optimiser.findings.beds import bed_approach
 from optimiser.findings.result import number
 from optimiser.findings.units import Units
-from optimiser.forward.flash import dew_point, flash_tp
+from optimiser.forward.flash import flash_tp
+from optimiser.forward.stability import dew_point
 from optimiser.inputs.paths import result_paths
 from optimiser.section.removal import SMOOTHING, SUPERHEAT
 from optimiser.solve.ending import Stopped
