@@ -69,7 +69,7 @@ def solve_case(
     workshop.timing["total"] = time.perf_counter() - clock
     answer["timing"] = workshop.timing
     answer["provenance"] = _provenance(case, seed, starts, backend or default_backend(), workshop)
-    return dict(result.finite(answer))
+    return answer
 
 
 def _with_point(workshop: Workshop, ending: Ending, *, thorough: bool, progress: Progress) -> dict[str, Any]:

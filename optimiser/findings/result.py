@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from typing import Any
 
 from optimiser.findings.units import Units
@@ -196,16 +195,3 @@ def _marginal_cost(case: Case, values: dict[str, float], slope: float) -> float 
     if case.objective == "annual profit" and case.prices.product is not None:
         return case.prices.product.si + slope
     return None
-
-
-def finite(data: Any, where: str = "result") -> Any:
-    """The data unchanged; raises ValueError naming the place of a number that JSON cannot hold."""
-    if isinstance(data, dict):
-        for key, value in data.items():
-            finite(value, f"{where}.{key}")
-    elif isinstance(data, list):
-        for k, value in enumerate(data):
-            finite(value, f"{where}[{k}]")
-    elif isinstance(data, float) and not math.isfinite(data):
-        raise ValueError(f"{where} is not a finite number")
-    return data

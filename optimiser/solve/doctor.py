@@ -5,7 +5,7 @@ from __future__ import annotations
 import importlib.metadata
 from typing import Any
 
-PACKAGES = ("pyomo", "casadi", "cyipopt-wheels", "highspy", "numpy", "scipy", "pandas", "pint", "pydantic")
+PACKAGES = ("pyomo", "casadi", "cyipopt-wheels", "highspy", "numpy", "scipy", "pydantic")
 
 
 def versions() -> dict[str, str]:

@@ -8,7 +8,7 @@ import pytest
 
 from optimiser.findings.answer import solve_case
 from optimiser.findings.checking import check_case
-from optimiser.inputs import read_case
+from optimiser.inputs import parse_case, read_case
 
 BEDS = ("bed1", "bed2", "bed3")
 
@@ -179,3 +179,24 @@ def test_one_process_and_two_give_the_same_digits(plain) -> None:
     other = answer(processes=1)
     assert other["objective"]["value"] == plain["objective"]["value"]
     assert other["decisions"] == plain["decisions"]
+
+
+def test_a_quoted_cost_takes_the_place_of_its_correlation(plain) -> None:
+    """Quoted at its own size and in the year of the case, an asset costs what was quoted."""
+    power = plain["quantities"]["compression.power"]
+    size = f"{power['value']} {power['unit']}"
+    added = f"  quoted:\n    compressors: {{cost: 30 MEUR, size: {size}, exponent: 0.6, year: 2023}}\n"
+    text = read_case("ammonia-loop").resolved_yaml()
+    quoted = parse_case(text.replace("  quoted: {}\n", added))
+    result = solve_case(quoted, starts=1)
+    assert result["status"] == "optimal"
+    share = (result["quantities"]["compression.power"]["value"] / power["value"]) ** 0.6
+    assert result["costs"]["capital"]["compressors"]["value"] == pytest.approx(30e6 * share, rel=1e-6)
+
+
+def test_a_carbon_price_is_paid_for_purge_and_electricity(plain) -> None:
+    result = answer("prices.carbon=80 EUR/t", "prices.electricity_carbon=0.2 kg/kWh")
+    assert result["status"] == "optimal"
+    values = {p: q["value"] for p, q in result["quantities"].items()}
+    power = values["compression.power"] + values["loop.circulator_power"] + values["condensation.chiller.power"]
+    assert result["costs"]["items"]["carbon"]["value"] > 0.2 * 80.0 / 1000.0 * power * 8000.0 * 0.99
