@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from typing import Any
 
 import numpy as np
@@ -10,26 +9,21 @@ import numpy as np
 from optimiser.findings.result import number
 from optimiser.findings.run import Workshop
 from optimiser.findings.units import Units
-from optimiser.forward.audit import KELVIN, Line, Point, audit
-from optimiser.forward.streams import StateProblem, Stream
-from optimiser.quantities import Limit
+from optimiser.forward.audit import AuditLine, AuditPoint, audit
+from optimiser.forward.limits import case_limits
+from optimiser.forward.stream import Stream
 
 _KELVIN = ("temperature", "temperature_difference")
 
 
-def point_of(workshop: Workshop, values: dict[str, float]) -> Point:
+def point_of(workshop: Workshop, values: dict[str, float]) -> AuditPoint:
     """What the model reports at its present point, for the audit."""
     frame = workshop.section.frame
     streams = {name: _stream(name, record) for name, record in frame.streams.items()}
     setpoints = {path: number(variable) for path, (variable, _) in frame.decisions.items()}
-    setpoints["loop.purge_fraction"] = values["loop.purge_fraction"]
     makeup = {name: values[f"feed.streams.{name}.flow"] for name in workshop.case.feed.streams}
-    dimensions = {path: reported.dimension for path, reported in frame.reported.items()}
-    limits = dict(workshop.case.limits)
-    for path, setting in workshop.case.settings().items():
-        if not setting.held and path not in limits:
-            limits[path] = Limit(setting.low, setting.high, setting.unit, setting.dimension)
-    return Point(setpoints, makeup, streams["circulator.out"], values, dimensions, streams, limits)
+    limits = case_limits(workshop.case)
+    return AuditPoint(setpoints, makeup, streams["recycle"], values, streams, limits)
 
 
 def _stream(name: str, record: Any) -> Stream:
@@ -42,40 +36,22 @@ def _stream(name: str, record: Any) -> Stream:
 
 def audit_point(workshop: Workshop, values: dict[str, float], units: Units) -> dict[str, Any]:
     """{passed, worst, lines} of the model's present point."""
-    try:
-        lines, _ = audit(workshop.forward, point_of(workshop, values))
-    except (StateProblem, ArithmeticError, ValueError) as problem:
-        return {
-            "passed": False,
-            "worst": None,
-            "lines": [],
-            "reason": f"the section cannot be rebuilt: {problem}",
-        }
-    rows = [_row(line, units) for line in lines]
-    worst = max(lines, key=_badness)
-    return {"passed": all(line.passed for line in lines), "worst": _row(worst, units), "lines": rows}
+    report = audit(workshop.forward, point_of(workshop, values))
+    rows = [_row(line, units) for line in report.lines]
+    return {"passed": report.passed, "worst": _row(report.worst, units), "lines": rows}
 
 
-def _badness(line: Line) -> float:
-    """Difference over what is allowed; a difference that is no number is worse than any."""
-    share = line.difference / line.allowed
-    return share if math.isfinite(share) else math.inf
-
-
-def _finite(value: float) -> float | None:
-    return float(value) if math.isfinite(value) else None
-
-
-def _row(line: Line, units: Units) -> dict[str, Any]:
-    """A line with numbers in the trade's units; differences in K for temperatures, else relative."""
-    kelvin = line.dimension in _KELVIN and line.allowed == KELVIN
+def _row(line: AuditLine, units: Units) -> dict[str, Any]:
+    """A line in the trade's units; differences in K for temperatures, of fractions as they are, else relative."""
+    kelvin = line.dimension in _KELVIN
+    size = 1.0 if kelvin or line.dimension == "fraction" else max(abs(line.audit), abs(line.model), 1e-300)
     return {
         "what": line.what,
-        "model": _finite(units.plain(line.dimension, line.model)["value"]),
-        "audit": _finite(units.plain(line.dimension, line.audit)["value"]),
+        "model": units.plain(line.dimension, line.model)["value"],
+        "audit": units.plain(line.dimension, line.audit)["value"],
         "quantity_unit": units.plain(line.dimension, line.audit)["unit"],
-        "difference": _finite(line.difference),
-        "allowed": line.allowed,
+        "difference": line.difference / size,
+        "allowed": line.allowed / size,
         "unit": "K" if kelvin else "-",
         "passed": line.passed,
     }

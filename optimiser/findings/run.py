@@ -14,7 +14,6 @@ from typing import Any
 from optimiser.chemistry.reactions import Chemistry
 from optimiser.engineering.costs import Equipment, load_equipment
 from optimiser.findings.setpoints import starting_setpoints
-from optimiser.forward.closing import converge
 from optimiser.forward.walk import Section
 from optimiser.inputs.case import BedStep, Case
 from optimiser.inputs.model import Model, read_model
@@ -49,7 +48,7 @@ class Workshop:
 
     def start(self, setpoints: dict[str, float]) -> Any:
         """Scaled start from a walk through the section at these setpoints."""
-        walk = converge(self.forward, setpoints, positions=self.positions())
+        walk = self.forward.start(setpoints, positions=self.positions())
         load_walk(self.section, walk)
         return self.completion.complete(self.nlp.start())
 

@@ -1,5 +1,7 @@
 """Room 5: the section step by step in plain numbers: starting points, and the audit of an optimum.
 
-Nothing here knows the algebraic section: beds are integrated, phases flashed by successive substitution, temperatures
-found from enthalpies one after the other.
+It shares the formulas of chemistry and engineering with the equations that it audits, and nothing else: beds
+    are
+integrated by a stiff integrator, phases part in a flash of their own, temperatures are found by Newton's
+method.
 """

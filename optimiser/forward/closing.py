@@ -1,129 +1,134 @@
-"""Closing the loop: the recycle that a pass begins with is the one that it ends with.
-
-Direct substitution, since the beds forget what they are given; but an inert forgets nothing and builds up over as many
-rounds as the purge is small, so it is scaled by what comes in over what goes out. Where a product rate is wanted, the
-make-up is scaled to it along the way. Starts need no more than a loose closure.
-"""
+"""Closes the loop of one case for one set of setpoints, pass after pass."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-
 import numpy as np
-from numpy.typing import NDArray
 
-from optimiser.forward.streams import StateProblem, gas
-from optimiser.forward.walk import Section, Walk
+from optimiser.forward.bed import needed
+from optimiser.forward.onepass import OnePass, species_fed
+from optimiser.forward.reactor import BedRequest
+from optimiser.forward.report import Pieces, Reporter
+from optimiser.forward.stream import Floats, NotConverged, SetpointFailure, Stream, gas_stream
+from optimiser.forward.tear import LoopBalance, Mixing, Split, first_split
+from optimiser.forward.train import present_coolers
+from optimiser.inputs.case import CoolStep
 
-Floats = NDArray[np.float64]
-MOST = 8.0
-"""Largest recycle to make-up of a start: a reactor that converts next to nothing would run away from it."""
-STEP = 0.7
-"""Largest change of the logarithm of a flow in one round."""
-
-
-def makeup_guess(section: Section, setpoints: Mapping[str, float]) -> dict[str, float]:
-    """Flow of each feed stream, mol/s: stated, or what nine tenths of it would turn into the product wanted."""
-    feed, chemistry = section.case.feed, section.chemistry
-    if feed.product_rate is None:
-        return {name: setpoints[f"feed.streams.{name}.flow"] for name in feed.streams}
-    k = section.mixture.names.index(chemistry.products[0])
-    reaction = next(r for r in chemistry.reactions if r.nu[k] > 0)
-    used = -sum(nu for nu in reaction.nu if nu < 0) / reaction.nu[k]
-    total = setpoints["feed.product_rate"] / section.mixture.molar_mass[k] * used / 0.9
-    shares = {name: setpoints.get(f"feed.streams.{name}.share") for name in feed.streams}
-    rest = 1.0 - sum(s for s in shares.values() if s is not None)
-    return {name: total * (rest if s is None else s) for name, s in shares.items()}
+FIRST_PURGE = 0.02
+LARGEST_GROWTH = 0.5
+LEAST = 1e-12
+"""Least flow of a species over that of the make-up; logarithms are taken."""
 
 
-def _first_recycle(section: Section, makeup: Mapping[str, float], setpoints: Mapping[str, float]) -> Floats:
-    """A plausible recycle: four times the make-up, poor in product, with inerts as the purge lets them build up."""
-    names, chemistry = section.mixture.names, section.chemistry
-    fresh = fresh_flows(section, makeup)
-    ratio = setpoints.get("loop.recycle_ratio", 4.0)
-    flows = ratio * fresh
-    total = float(flows.sum())
-    for k, name in enumerate(names):
-        if name in chemistry.inerts:
-            flows[k] = min(fresh[k] / max(setpoints["loop.purge_fraction"], 1e-4), 0.15 * total)
-        elif name in chemistry.products:
-            flows[k] = max(flows[k], 0.03 * total)
-    return np.maximum(flows, 1e-6 * total)
+class Closing:
+    """The search for the recycle that brings itself back.
 
+    Unknown are the logarithms of the recycle of each species and of the make-up.
+    """
 
-def converge(
-    section: Section,
-    setpoints: dict[str, float],
-    *,
-    positions: Mapping[str, Sequence[float]] | None = None,
-    closure: float = 2e-2,
-    rounds: int = 10,
-    tolerance: float = 1e-5,
-) -> Walk:
-    """A walk whose recycle closes within `closure` (relative, each species), or the last of `rounds` walks."""
-    setpoints = {"loop.purge_fraction": 0.03, **setpoints}
-    purge = setpoints["loop.purge_fraction"]
-    makeup = makeup_guess(section, setpoints)
-    wanted = setpoints.get("feed.product_rate") if section.case.feed.product_rate is not None else None
-    guess = sum(makeup.values())
-    flows = _first_recycle(section, makeup, setpoints)
-    for _ in range(rounds):
-        fresh = fresh_flows(section, makeup)
-        try:
-            vapour, liquid, hottest = section.round_trip(setpoints, fresh, flows, tolerance)
-        except StateProblem:
-            flows = 0.6 * flows  # Too much gas for the beds: the next round tries less.
-            continue
-        cooler = _cooler_inlets(section, setpoints, hottest)
-        gap = _gap(
-            section, fresh, flows, vapour.vapour * (1.0 - purge), vapour.vapour * purge + liquid.liquid
-        )
-        made = _product(section, liquid.liquid)
-        scale = min(max(wanted / max(made, 1e-9), 0.8), 1.25) if wanted is not None else 1.0
-        if float(np.max(np.abs(gap))) < closure and abs(scale - 1.0) < closure and cooler == setpoints:
-            break
-        setpoints = cooler
-        scale = min(scale, 1.3 * guess / sum(makeup.values()))
-        makeup = {name: flow * scale for name, flow in makeup.items()}
-        flows = flows * np.exp(np.clip(gap, -STEP, STEP)) * scale
-        flows *= min(1.0, MOST * float(fresh.sum()) / float(flows.sum()))
-    recycle = gas("given", flows, 300.0, setpoints["loop.pressure"])
-    return section.walk(setpoints, makeup, recycle, positions, tolerance)
+    def __init__(self, passes: OnePass, reporter: Reporter, setpoints: dict[str, float]) -> None:
+        self.case, self.chemistry = passes.case, passes.chemistry
+        self._passes, self._reporter, self._known = passes, reporter, setpoints
+        self._first = self._makeup()
+        self.fed = species_fed(self.case, self.chemistry.mixture.names, self._first)
+        self.balance = LoopBalance(self.chemistry, self.fed)
+        self.passes = 0
 
+    def run(
+        self, request: BedRequest, tolerance: float, iterations: int, *, must_close: bool = True
+    ) -> tuple[Pieces, Stream]:
+        """The last pass and the recycle that it began with.
 
-def fresh_flows(section: Section, makeup: Mapping[str, float]) -> Floats:
-    """Flow of each species in the make-up, mol/s."""
-    names = section.mixture.names
-    fresh = np.zeros(len(names))
-    for name, data in section.case.feed.streams.items():
-        fresh += makeup[name] * np.array([data.composition.get(s, 0.0) for s in names])
-    return fresh
+        Args:
+            request: how beds are to be computed.
+            tolerance: largest change of a logarithm that closes the loop.
+            iterations: most passes, at least 1.
+            must_close: whether a loop that is still open after them is a failure.
 
+        Raises:
+            ForwardFailure: a pass could not be computed, or the loop did not close.
+        """
+        mixing, pieces = Mixing(), None
+        recycle = self._guess()
+        x = self._unknowns(first_split(self.chemistry, self._purge()))
+        for self.passes in range(1, iterations + 1):
+            recycle = gas_stream("recycle", np.exp(x[:-1]), recycle.temperature, recycle.pressure)
+            scale = float(np.exp(x[-1]))
+            makeup = {name: scale * flow for name, flow in self._first.items()}
+            pieces = self._passes.run(self._known, makeup, recycle, request, pieces)
+            image = self._unknowns(self._split(pieces), float(x[-1]))
+            found = pieces.train.separator
+            moved = max(
+                abs(found.pressure / recycle.pressure - 1.0),
+                abs(found.temperature / recycle.temperature - 1.0),
+            )
+            if max(moved, float(np.max(np.abs(image - x)))) < tolerance:
+                return pieces, recycle
+            x = mixing.next(x, image)
+            recycle = gas_stream("recycle", recycle.vapour, found.temperature, found.pressure)
+        if pieces is not None and not must_close:
+            return pieces, recycle
+        raise NotConverged(f"the loop did not close within {iterations} passes")
 
-def _product(section: Section, liquid: Floats) -> float:
-    """Contained product, kg/s."""
-    wanted = [section.mixture.names.index(p) for p in section.chemistry.products]
-    return float(sum(liquid[k] * section.mixture.molar_mass[k] for k in wanted))
+    def _makeup(self) -> dict[str, float]:
+        """Flow of each feed stream, mol/s: set, or a first guess in the shares that are set."""
+        streams, known = self.case.feed.streams, self._known
+        if self.case.feed.product_rate is None:
+            return {name: needed(known, f"feed.streams.{name}.flow") for name in streams}
+        shares = {
+            name: needed(known, f"feed.streams.{name}.share") for name, s in streams.items() if s.share is not None
+        }
+        left = 1.0 - sum(shares.values())
+        rest = [name for name in streams if name not in shares]
+        if left < 0.0 or len(rest) > 1:
+            raise SetpointFailure("the shares of the feed streams do not leave a remainder for one stream")
+        shares |= dict.fromkeys(rest, left)
+        total = self._first_flow()
+        return {name: total * shares[name] for name in streams}
 
+    def _first_flow(self) -> float:
+        """Make-up that nine tenths of what it could make, mol/s."""
+        product = self.chemistry.mixture.names.index(self.chemistry.products[0])
+        rate = needed(self._known, "feed.product_rate") / self.chemistry.mixture.molar_mass[product]
+        reaction = next(r for r in self.chemistry.reactions if r.nu[product] > 0)
+        return float(rate * -sum(nu for nu in reaction.nu if nu < 0) / reaction.nu[product] / 0.9)
 
-def _gap(section: Section, fresh: Floats, given: Floats, back: Floats, out: Floats) -> Floats:
-    """Change of the logarithm of each recycle flow: of inerts by the balance of the whole section."""
-    gap = np.log(np.maximum(back, 1e-12)) - np.log(given)
-    for k, name in enumerate(section.mixture.names):
-        if name in section.chemistry.inerts:
-            gap[k] = float(np.log(fresh[k] / out[k]))
-    return np.asarray(gap)
+    def _purge(self) -> float:
+        """The purge fraction, or a first guess where the recycle ratio is held in its place."""
+        ratio = self.case.loop.recycle_ratio
+        held = ratio is not None and ratio.held
+        return FIRST_PURGE if held else max(needed(self._known, "loop.purge_fraction"), 1e-5)
 
+    def _guess(self) -> Stream:
+        """A first recycle: by the pressure drops that are known, at the last cooler's temperature."""
+        case = self.case
+        drop = case.loop.feed_pressure_drop.si + case.condensation.pressure_drop.si
+        drop += sum(step.pressure_drop.si for step in case.reactor if isinstance(step, CoolStep))
+        pressure = max(needed(self._known, "loop.pressure") - drop, 1e5)
+        last = present_coolers(case)[-1]
+        temperature = self._known.get(f"condensation.{last}.outlet_temperature", 300.0)
+        return gas_stream("recycle", self.fed, temperature, pressure)
 
-def _cooler_inlets(
-    section: Section, setpoints: dict[str, float], hottest: Mapping[str, float]
-) -> dict[str, float]:
-    """Setpoints with the inlet of each bed that passes its own limit lowered, as far as its range goes."""
-    limits, settings = section.case.limits, section.case.settings()
-    changed = dict(setpoints)
-    for name, temperature in hottest.items():
-        limit, path = limits.get(f"reactor.{name}.hottest"), f"reactor.{name}.inlet_temperature"
-        if limit is None or limit.high is None or temperature <= limit.high or settings[path].held:
-            continue
-        changed[path] = max(setpoints[path] - 0.8 * (temperature - limit.high + 2.0), settings[path].low)
-    return changed
+    def _split(self, pieces: Pieces) -> Split:
+        """How a pass treats what enters the converter."""
+        extents = np.sum([profile.extents[-1] for profile in pieces.reactor.beds.values()], axis=0)
+        purge = pieces.parted.fraction
+        return self.balance.read(pieces.mixed.flows, extents, pieces.train.separator, purge)
+
+    def _unknowns(self, split: Split, present: float = 0.0) -> Floats:
+        """Logarithms of the recycle that closes the loop with the split held, and of the make-up's growth.
+
+        The make-up grows or shrinks by no more than half from its `present` growth (a logarithm), since a
+        pass that condenses nothing says nothing of the make-up that would.
+        """
+        ratio = self.case.loop.recycle_ratio
+        if ratio is not None and ratio.held:
+            recycle, liquid = self.balance.solve_at_ratio(split, needed(self._known, "loop.recycle_ratio"))
+        else:
+            recycle, liquid = self.balance.solve(split)
+        growth = 0.0
+        if self.case.feed.product_rate is not None:
+            made = max(self._reporter.product_rate(liquid), LEAST)
+            wanted = float(np.log(needed(self._known, "feed.product_rate") / made))
+            growth = min(max(wanted, present - LARGEST_GROWTH), present + LARGEST_GROWTH)
+        flows = np.log(np.maximum(recycle, LEAST * float(self.fed.sum())))
+        return np.append(flows + growth, growth)

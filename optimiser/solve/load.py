@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from typing import Any
 
-from optimiser.forward.streams import dew_temperature, incipient_liquid
 from optimiser.forward.walk import Walk
 from optimiser.section.build import SectionModel
 
@@ -30,7 +29,7 @@ def load_walk(section: SectionModel, walk: Walk) -> None:
         for variable, flow in zip(record.vapour, stream.vapour, strict=True):
             _set(variable, max(float(flow), 1e-8 * frame.flow))
     for name, flash in frame.flashes.items():
-        _load_flash(section, flash, walk.streams[name])
+        _load_flash(section, flash, walk.streams[name], walk.dews.get(name))
     for bed in section.reactor.beds:
         _load_bed(bed, walk.beds[bed.name])
     loop = frame.model.loop
@@ -39,7 +38,7 @@ def load_walk(section: SectionModel, walk: Walk) -> None:
     _set(frame.reported["feed.flow"].variables[0], walk.quantities["feed.flow"])
 
 
-def _load_flash(section: SectionModel, flash: Any, stream: Any) -> None:
+def _load_flash(section: SectionModel, flash: Any, stream: Any, first: Any) -> None:
     """Both phases; a gas without liquid starts with the first drop that it would form."""
     mixture, flow = section.frame.mixture, section.frame.flow
     temperature, pressure, dew = stream.temperature, stream.pressure, stream.temperature
@@ -47,9 +46,7 @@ def _load_flash(section: SectionModel, flash: Any, stream: Any) -> None:
     if total > 1e-9 * float(stream.vapour.sum()):
         fractions = stream.liquid / total
     else:
-        z = stream.vapour / stream.vapour.sum()
-        dew = dew_temperature(mixture, z, pressure)
-        fractions, _ = incipient_liquid(mixture, z, dew, pressure)
+        dew, fractions = first.temperature, first.fractions
     for variable, x in zip(flash.fractions, fractions, strict=True):
         _set(variable, max(float(x), 2e-9))
     _set(flash.liquid_flow, max(total, 1e-6 * flow))

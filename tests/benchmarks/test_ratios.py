@@ -102,8 +102,7 @@ def test_against_a_stepwise_optimiser(workshop) -> None:
 
     from optimiser.findings.run import best_attempt, optimise
     from optimiser.findings.setpoints import starting_setpoints
-    from optimiser.forward.closing import converge
-    from optimiser.forward.streams import StateProblem
+    from optimiser.forward.stream import ForwardFailure
 
     begin = time.perf_counter()
     best = best_attempt(optimise(workshop, starts=1, processes=1))
@@ -122,8 +121,8 @@ def test_against_a_stepwise_optimiser(workshop) -> None:
         calls += 1
         try:
             values = dict(point) | dict(zip(free, low + u * span, strict=True))
-            quantities = converge(workshop.forward, values, closure=1e-7, rounds=60, tolerance=1e-8).quantities
-        except StateProblem:
+            quantities = workshop.forward.converge(values, tolerance=1e-7, iterations=60, bed_tolerance=1e-8).quantities
+        except ForwardFailure:
             return 0.0, [-1.0]
         made = quantities["product.rate"] * workshop.case.economics.hours_per_year.si
         room = [

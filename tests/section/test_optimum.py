@@ -18,7 +18,8 @@ from optimiser.findings.audits import audit_point
 from optimiser.findings.beds import bed_approach
 from optimiser.findings.result import number
 from optimiser.findings.units import Units
-from optimiser.forward.streams import dew_temperature, flash
+from optimiser.forward.flash import flash_tp
+from optimiser.forward.stability import dew_point
 from optimiser.inputs.paths import result_paths
 from optimiser.section.removal import SMOOTHING, SUPERHEAT
 from optimiser.solve.ending import Stopped
@@ -96,12 +97,12 @@ def test_each_flash_has_liquid_or_superheat_and_not_both(solved):
 
 
 def test_wet_flashes_agree_with_successive_substitution(solved):
-    mixture = solved.workshop.forward.mixture
-    for name, ours in flashes(solved).items():
+    properties = solved.workshop.forward.properties
+    for ours in flashes(solved).values():
         if number(ours.superheat) > 1.0:
             continue
         flows = np.array([number(a) + number(b) for a, b in zip(ours.vapour, ours.liquid, strict=True)])
-        there = flash(mixture, name, flows, number(ours.temperature), number(ours.pressure))
+        there = flash_tp(properties, flows, number(ours.temperature), number(ours.pressure))
         liquid = np.array([number(n) for n in ours.liquid])
         assert liquid == pytest.approx(there.liquid, rel=1e-3)
         assert liquid.sum() == pytest.approx(there.liquid.sum(), rel=1e-4)
@@ -112,7 +113,7 @@ def test_superheat_of_a_dry_flash_is_its_distance_from_the_dew_point(solved):
     assert dry
     for ours in dry.values():
         vapour = np.array([number(n) for n in ours.vapour])
-        dew = dew_temperature(solved.workshop.forward.mixture, vapour / vapour.sum(), number(ours.pressure))
+        dew = dew_point(solved.workshop.forward.properties, vapour, number(ours.pressure)).temperature
         assert number(ours.temperature) - number(ours.superheat) == pytest.approx(dew, abs=0.1)
 
 
