@@ -26,8 +26,12 @@ SUPERHEAT = 100.0
 
 @dataclass
 class Flash:
-    """Both phases at equilibrium: flows mol/s, temperature K, pressure Pa, enthalpy W."""
+    """Both phases at equilibrium: flows mol/s, temperature K, pressure Pa, enthalpy W.
 
+    `flows` are those of both phases together.
+    """
+
+    flows: Sequence[Any]
     vapour: list[Any]
     liquid: list[Any]
     liquid_flow: Any
@@ -73,6 +77,7 @@ def build_flash(
     enthalpy = frame.define(block, "enthalpy", "heat", gas.enthalpy + liquid_flow * liquid.enthalpy)
     flows = [liquid_flow * x for x in fractions]
     flash = Flash(
+        total,
         vapour,
         flows,
         liquid_flow,

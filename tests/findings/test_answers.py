@@ -200,3 +200,16 @@ def test_a_carbon_price_is_paid_for_purge_and_electricity(plain) -> None:
     values = {p: q["value"] for p, q in result["quantities"].items()}
     power = values["compression.power"] + values["loop.circulator_power"] + values["condensation.chiller.power"]
     assert result["costs"]["items"]["carbon"]["value"] > 0.2 * 80.0 / 1000.0 * power * 8000.0 * 0.99
+
+
+def test_two_coolers_that_may_condense_follow_each_other() -> None:
+    """Boiler feed water behind the last bed, then the exchanger that closes the heating of the feed."""
+    path = read_case("ammonia-loop").path
+    assert path is not None
+    lines = path.read_text(encoding="utf-8").splitlines()
+    kept = [line for line in lines if "steam" not in line.split("#")[0] or "sink:" in line]
+    text = "\n".join(kept).replace("sink: steam", "sink: boiler_feed_water").replace("265 .. 400", "200 .. 400")
+    priced = text.replace("prices:\n", "prices:\n  boiler_feed_water_heat: 0.01 EUR/kWh\n")
+    result = solve_case(parse_case(priced), starts=2)
+    assert result["status"] == "optimal", result["audit"]["worst"]
+    assert "water_heat_credit" in result["costs"]["items"]
