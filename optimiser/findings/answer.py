@@ -4,17 +4,18 @@ from __future__ import annotations
 
 import sys
 import time
+from dataclasses import replace
 from typing import Any
 
 from optimiser import __version__
 from optimiser.findings import result
 from optimiser.findings.audits import audit_point
 from optimiser.findings.beds import bed_rows
-from optimiser.findings.refit import refit
+from optimiser.findings.refit import factor_steps, refit
 from optimiser.findings.run import Workshop, best_attempt, open_workshop, optimise
 from optimiser.findings.thorough import neighbours
 from optimiser.findings.units import Units
-from optimiser.findings.warnings import gather_warnings
+from optimiser.findings.warnings import broken_limits, gather_warnings
 from optimiser.inputs.case import Case
 from optimiser.inputs.paths import result_paths
 from optimiser.progress import Progress
@@ -29,6 +30,7 @@ GRADES = {
     "failed audit": "converged, but the audit disagrees",
     "loose": "close to an optimum, but short of the tolerance",
     "best": "best point so far, no optimum",
+    "interrupted": "best of the starts that had finished",
     "none": "no point",
 }
 
@@ -63,10 +65,16 @@ def solve_case(
     answer = _without_point(case, "failed", "no start could be computed", seed, starts)
     if best is not None and best.ending is not None:
         ending = refit(workshop, best.ending)
+        attempts = [replace(a, ending=ending) if a is best else a for a in attempts]
         answer |= _with_point(workshop, ending, thorough=thorough, progress=progress)
     answer["starts"] = [_start_row(workshop, attempt) for attempt in attempts]
     answer["warnings"] = answer.get("warnings", []) + _spread_warning(attempts, best)
+    if factor_steps(workshop):
+        answer["warnings"].append(
+            "only the best start was solved again with the fitted beds at rest; the others show what came before"
+        )
     if workshop.interrupted:
+        answer |= {"status": "failed", "stopped": Stopped.INTERRUPTED.value, "grade": GRADES["interrupted"]}
         ended = sum(a.ending is not None and a.ending.converged for a in attempts)
         answer["warnings"].insert(0, f"the run was interrupted: {ended} of {len(attempts)} starts were finished")
     workshop.timing["total"] = time.perf_counter() - clock
@@ -106,7 +114,7 @@ def _with_point(workshop: Workshop, ending: Ending, *, thorough: bool, progress:
         "product": result.product(section, nlp, ending, units, values),
         "quantities": {path: units.show(path, dimensions[path], value) for path, value in values.items()},
         "audit": audit,
-        "warnings": gather_warnings(workshop, values),
+        "warnings": [*broken_limits(workshop, values, units), *gather_warnings(workshop, values)],
     }
 
 
@@ -144,9 +152,9 @@ def empty_ranges(case: Case) -> str:
         if setting is None:
             continue
         if limit.low is not None and limit.low > setting.high:
-            return f"limits.{path} asks for more than the range of {path} allows"
+            return f"the limit limits.{path} asks for more than the range of {path} allows"
         if limit.high is not None and limit.high < setting.low:
-            return f"limits.{path} asks for less than the range of {path} allows"
+            return f"the limit limits.{path} asks for less than the range of {path} allows"
     return ""
 
 

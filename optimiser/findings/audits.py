@@ -22,7 +22,7 @@ def point_of(workshop: Workshop, values: dict[str, float]) -> AuditPoint:
     streams = {name: _stream(name, record) for name, record in frame.streams.items()}
     setpoints = {path: number(variable) for path, (variable, _) in frame.decisions.items()}
     makeup = {name: values[f"feed.streams.{name}.flow"] for name in workshop.case.feed.streams}
-    limits = case_limits(workshop.case)
+    limits = case_limits(workshop.case) if workshop.section.frame.has_freedom else {}
     return AuditPoint(setpoints, makeup, streams["recycle"], values, streams, limits)
 
 

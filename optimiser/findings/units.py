@@ -24,16 +24,16 @@ class Units:
     def show(self, path: str, dimension: str, si: float) -> dict[str, Any]:
         """{value, unit} of an SI value."""
         unit = self.unit(path, dimension)
-        return {"value": to_shown(si, unit, dimension, self._currency), "unit": unit}
+        return {"value": float(to_shown(si, unit, dimension, self._currency)), "unit": unit}
 
     def plain(self, dimension: str, si: float) -> dict[str, Any]:
         """{value, unit} in the trade's unit."""
         unit = shown_unit(dimension, self._currency)
-        return {"value": to_shown(si, unit, dimension, self._currency), "unit": unit}
+        return {"value": float(to_shown(si, unit, dimension, self._currency)), "unit": unit}
 
     def convert(self, si: float, unit: str, dimension: str) -> float:
         """An SI value in a unit of the user's choice."""
-        return to_shown(si, unit, dimension, self._currency)
+        return float(to_shown(si, unit, dimension, self._currency))
 
     def step(self, unit: str, dimension: str) -> float:
         """Size in SI of one unit, as a difference (1 degC is 1 K)."""

@@ -6,6 +6,7 @@ from optimiser.engineering.costs import gauge_bar
 from optimiser.engineering.vessels import wall_out_of_range
 from optimiser.findings.result import number
 from optimiser.findings.run import Workshop
+from optimiser.findings.units import Units
 from optimiser.inputs.case import BedStep
 
 
@@ -18,6 +19,23 @@ def gather_warnings(workshop: Workshop, values: dict[str, float]) -> list[str]:
         *_chemistry(workshop, values),
         *_factors(workshop),
     ]
+
+
+def broken_limits(workshop: Workshop, values: dict[str, float], units: Units) -> list[str]:
+    """Limits that a section with nothing free does not keep to; elsewhere the optimum keeps to all of them."""
+    frame = workshop.section.frame
+    if frame.has_freedom:
+        return []
+    found: dict[str, str] = {}
+    for edge in frame.edges:
+        value = number(edge.variable)
+        passed = value - edge.value if edge.side == "high" else edge.value - value
+        if passed > 1e-6 * max(abs(edge.value), 1e-12):
+            dimension = frame.reported[edge.reported].dimension
+            shown, end = (units.convert(v, edge.unit, dimension) for v in (value, edge.value))
+            sign = "<=" if edge.side == "high" else ">="
+            found[edge.path] = f"{edge.reported} is {shown:.4g} {edge.unit}, its limit {sign} {end:.4g} {edge.unit}"
+    return [f"limit broken: {sentence}" for sentence in found.values()]
 
 
 def _cost(values: dict[str, float]) -> list[str]:

@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from rich.console import RenderableType
 
 MEANINGS = {
-    "ready": "The case can be solved.",
+    "ready": "The case is well formed; nothing was solved.",
     "over-specified": "More is held than the plant leaves open: free one of the settings named below.",
     "under-specified": "Too little is given to calculate the plant: give what is named below.",
     "conflict": "The case is well formed, but no point can hold all of it.",

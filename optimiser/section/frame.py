@@ -110,6 +110,11 @@ class Frame:
         self._factor = self.model.scaling_factor
 
     @property
+    def has_freedom(self) -> bool:
+        """Whether the case frees anything; if not, limits are compared with what is calculated and bound nothing."""
+        return any(not setting.held for setting in self.case.settings().values())
+
+    @property
     def mixture(self) -> Mixture:
         """Species and equation of state."""
         return self.chemistry.mixture
@@ -200,7 +205,7 @@ class Frame:
         """Tighten a bound; among several on one side the tightest counts and is the one that gets reported."""
         self.edges.append(edge)
         variable = edge.variable
-        if variable.fixed:
+        if variable.fixed or not self.has_freedom:
             return
         if edge.side == "low" and (variable.lb is None or edge.value > variable.lb):
             variable.setlb(edge.value)

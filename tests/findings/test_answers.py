@@ -213,3 +213,13 @@ def test_two_coolers_that_may_condense_follow_each_other() -> None:
     result = solve_case(parse_case(priced), starts=2)
     assert result["status"] == "optimal", result["audit"]["worst"]
     assert "water_heat_credit" in result["costs"]["items"]
+
+
+def test_nothing_free_names_the_limits_that_it_breaks(plain) -> None:
+    """A calculated section is calculated as it is, and told what it passes."""
+    sets = [f"{p}={d['value']!r} {d['unit']}" for p, d in plain["decisions"].items() if d["at"] != "held"]
+    result = answer(*sets, "limits.reactor.bed1.hottest=<= 450 degC")
+    assert result["status"] == "calculated"
+    hottest = plain["quantities"]["reactor.bed1.hottest"]["value"]
+    assert result["quantities"]["reactor.bed1.hottest"]["value"] == pytest.approx(hottest, abs=0.05)
+    assert any(w.startswith("limit broken: reactor.bed1.hottest is 515") for w in result["warnings"])

@@ -22,7 +22,7 @@ def test_page_of_a_case_that_is_ready():
     assert check_page(FOUND, title="Ammonia at a windy coast") == (
         "Ammonia at a windy coast" + " " * 51 + "ready\n"
         "\n"
-        "  The case can be solved.\n"
+        "  The case is well formed; nothing was solved.\n"
         "  1,301 variables, 1,300 equations: one setting is free.\n"
         "\n"
         "Free\n"
@@ -42,5 +42,5 @@ def test_what_does_not_add_up_is_named(status):
     group = "too many values are stated for the equations of: loop"
     page = check_page(FOUND | {"status": status, "groups": [group], "freedom": -1}, title="x")
     assert status in page.splitlines()[0]
-    assert "The case can be solved." not in page
+    assert "The case is well formed; nothing was solved." not in page
     assert page.endswith(f"\nDoes not add up\n  - {group}\n")
