@@ -6,7 +6,7 @@ import gc
 import signal
 import threading
 import time
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass, field
 from typing import Any
@@ -28,7 +28,7 @@ from optimiser.solve.nlp import Nlp
 from optimiser.solve.starts import Attempt, run_attempts
 
 # Extra starts that need more iterations than this are not worth the wait; the first start may take as many as it likes.
-EXTRA_ITERATIONS = 80
+EXTRA_ITERATIONS = 55
 
 
 @dataclass
@@ -133,20 +133,33 @@ def optimise(
         if workshop.interrupted:
             raise RuntimeError("the run was interrupted before this start")
         x0 = workshop.start(points[index])
-        options = {"max_iter": EXTRA_ITERATIONS} if index else {}
+        options = {"max_iter": EXTRA_ITERATIONS} if index and not patient else {}
         return solve(workshop.nlp, x0, backend=chosen, options=options, watch=workshop.watch)
 
     def done(attempt: Attempt) -> None:
         if progress is not None:
             progress.start(attempt.index, starts, _told(attempt))
 
+    patient = False
     with _interruptible(workshop):
         clock = time.perf_counter()
-        attempts = run_attempts(
-            solve_one, len(points), done=done, processes=processes, stopped=lambda: workshop.interrupted
-        )
+        attempts = _attempts(workshop, solve_one, len(points), done, processes)
+        if not workshop.interrupted and not any(a.ending is not None and a.ending.converged for a in attempts):
+            patient = True  # A hard case: none may be cut short now.
+            attempts = _attempts(workshop, solve_one, len(points), done, processes)
         workshop.timing["starts"] = time.perf_counter() - clock
     return attempts
+
+
+def _attempts(
+    workshop: Workshop,
+    solve_one: Callable[[int], Ending],
+    count: int,
+    done: Callable[[Attempt], None],
+    processes: int | None,
+) -> list[Attempt]:
+    """All starts once; what is left when the run is interrupted is given up."""
+    return run_attempts(solve_one, count, done=done, processes=processes, stopped=lambda: workshop.interrupted)
 
 
 def prepare_factors(workshop: Workshop, setpoints: dict[str, float]) -> None:
